@@ -1,0 +1,15 @@
+// The shared words of midwatch: error codes, verdicts, channels, judgements, cases, campaigns, leg messages.
+// Everything here is data and zod; nothing here acts. Start with verdict.ts, then judgement.ts.
+export { AppError, type ErrorCode, ERROR_CODES } from "./app-error.ts";
+export type { ChannelInfo, DeclaredPeriod } from "./channel.ts";
+export type {
+  AveragingWindow,
+  ChannelJudgement,
+  FoundPeriod,
+  HistoryJudgement,
+  Onset,
+  OnsetKind,
+  TestResult,
+} from "./judgement.ts";
+export type { Simulation } from "./simulation.ts";
+export { VERDICTS, type Verdict } from "./verdict.ts";
