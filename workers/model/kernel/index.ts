@@ -1,0 +1,5 @@
+// Induced velocity of vortex-filament lattices, the hot loop of the model: the lattice, the pair kernels that evaluate it.
+// Not here: what sheds, moves or truncates a lattice. Read typescript-kernel.ts first: it states formula and order.
+export { createLattice, dropRows, type Lattice, pushRow } from "./lattice.ts";
+export type { PairKernel, Points, Velocities } from "./pair-kernel.ts";
+export { typescriptKernel } from "./typescript-kernel.ts";
