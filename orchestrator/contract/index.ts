@@ -12,6 +12,22 @@ export type {
   OnsetKind,
   TestResult,
 } from "./judgement.ts";
+export {
+  type CheckpointPiece,
+  type HistoryPiece,
+  type LegOrder,
+  type LegRules,
+  legOrderSchema,
+  toChildSchema,
+} from "./leg-order.ts";
+export {
+  fromChildSchema,
+  type LegOutcome,
+  type LegProgress,
+  type LegReport,
+  legReportSchema,
+} from "./leg-report.ts";
+export type { LegEnding, LegRunner } from "./leg-runner.ts";
 export type {
   AcceptRule,
   OnsetRule,
