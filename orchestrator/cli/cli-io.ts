@@ -17,8 +17,8 @@ export interface CliIo {
   readonly onInterrupt: (listener: () => void) => () => void;
 }
 
-/** What a command is given: the surroundings, and the way to say that the answer is no. */
+/** What a command is given: the surroundings, and the way to end with another status than 0 without an error. */
 export interface CommandIo extends CliIo {
-  /** Makes the exit status 1: the command worked, and its answer is no. */
-  readonly answerNo: () => void;
+  /** 1: the command worked, and its answer is no. 2: part of the input was bad, and has been reported. */
+  readonly exitWith: (status: 1 | 2) => void;
 }

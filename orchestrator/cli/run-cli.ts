@@ -10,8 +10,8 @@ export async function runCli(args: readonly string[], io: CliIo): Promise<number
   let status = 0;
   const commandIo: CommandIo = {
     ...io,
-    answerNo: () => {
-      status = 1;
+    exitWith: (wanted) => {
+      status = wanted;
     },
   };
   try {

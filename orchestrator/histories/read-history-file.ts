@@ -1,7 +1,7 @@
 // Histories that other programs wrote: tables of numbers with a header, one line a time step. Nothing here judges them,
 // and midwatch's own histories are not read here. Read this file first, then table-layout.ts and table-rows.ts.
-import { closest } from "fastest-levenshtein";
 import { AppError } from "../contract/index.ts";
+import { nameList, nearestName } from "../planning/nearest-name.ts";
 import { hasDecimalComma } from "./number-cell.ts";
 import { openText } from "./open-text.ts";
 import { type TableLayout, tableLayout } from "./table-layout.ts";
@@ -83,9 +83,11 @@ function keptColumns(names: readonly string[], choice: ColumnChoice, shown: stri
   const find = (name: string): number => {
     const index = names.indexOf(name);
     if (index >= 0) return index;
+    const near = nearestName(name, names);
+    const hint = near === null ? "" : `Did you mean ${JSON.stringify(near)}? `;
     throw new AppError("HISTORY_INVALID", `${shown} has no column ${JSON.stringify(name)}`, {
       where: shown,
-      fix: `Did you mean ${JSON.stringify(closest(name, [...names]))}? It has ${names.join(", ")}.`,
+      fix: `${hint}It has ${nameList(names, 30)}.`,
     });
   };
   const time = choice.time === undefined ? 0 : find(choice.time);
