@@ -43,6 +43,7 @@ export const FOLDERS: readonly string[] = [
   "orchestrator/cli",
   "orchestrator/cli/commands",
   "orchestrator/contract",
+  "orchestrator/exports",
   "orchestrator/histories",
   "orchestrator/night",
   "orchestrator/planning",
