@@ -19,6 +19,6 @@ export interface CliIo {
 
 /** What a command is given: the surroundings, and the way to end with another status than 0 without an error. */
 export interface CommandIo extends CliIo {
-  /** 1: the command worked, and its answer is no. 2: part of the input was bad, and has been reported. */
-  readonly exitWith: (status: 1 | 2) => void;
+  /** 1: the command worked, and its answer is no. 2: part of the input was bad, and has been reported. 75: to be gone on with. */
+  readonly exitWith: (status: 1 | 2 | 75) => void;
 }

@@ -17,14 +17,30 @@ const io: CliIo = {
   env: process.env,
   cwd: process.cwd(),
   now: () => new Date(),
-  onInterrupt: (listener) => {
-    const signals = ["SIGINT", "SIGTERM", "SIGHUP"] as const;
-    for (const signal of signals) process.on(signal, listener);
-    return () => {
-      for (const signal of signals) process.off(signal, listener);
-    };
-  },
+  onInterrupt,
 };
+
+/** Signals beyond the first that a person sends to somebody who is slow to stop, until it ends at once. */
+const PATIENCE = 2;
+
+function onInterrupt(listener: () => void): () => void {
+  let signals = 0;
+  const hear = () => {
+    signals += 1;
+    // Whatever is in flight is repeated the next time: nothing committed is lost by this.
+    if (signals > PATIENCE) {
+      // Bars hide the cursor.
+      if (process.stderr.isTTY) process.stderr.write("\u001b[?25h\n");
+      process.exit(130);
+    }
+    listener();
+  };
+  const names = ["SIGINT", "SIGTERM", "SIGHUP"] as const;
+  for (const name of names) process.on(name, hear);
+  return () => {
+    for (const name of names) process.off(name, hear);
+  };
+}
 
 const status = await runCli(process.argv.slice(2), io);
 await new Promise<void>((resolve) => process.stdout.write("", () => resolve()));

@@ -63,6 +63,9 @@ async function readTable(
   return finished(rows, layout, { kept, decimalComma, shown });
 }
 
+/** The column of words that midwatch's own exports carry. */
+const CAUTION_COLUMN = "caution";
+
 /** Lines up to the end of the batch in which the second line with content comes: enough to know the layout by. */
 async function firstLines(batches: AsyncGenerator<string[]>): Promise<string[]> {
   const head: string[] = [];
@@ -91,7 +94,8 @@ function keptColumns(names: readonly string[], choice: ColumnChoice, shown: stri
     });
   };
   const time = choice.time === undefined ? 0 : find(choice.time);
-  const wanted = choice.channels?.map(find) ?? names.map((_, index) => index);
+  const wanted =
+    choice.channels?.map(find) ?? names.flatMap((name, index) => (name === CAUTION_COLUMN ? [] : [index]));
   const channels = new Set(wanted.filter((index) => index !== time));
   if (channels.size > 0) return [time, ...channels];
   throw new AppError("HISTORY_INVALID", `${shown}: ${JSON.stringify(names[time])} is the time, no channel`, {
