@@ -100,6 +100,19 @@ const wingSchema = z
     spanwise_panels: whole(2, 200)
       .default(24)
       .describe("Strips along the whole span; they cluster at the tips and under the rotors."),
+    cluster_at_m: z
+      .array(
+        z.strictObject({
+          along_span_m: number(-200, 200).describe("Place along the span, m."),
+          radius_m: number(0.001, 100).describe("Half-width of the cluster, m."),
+        }),
+      )
+      .max(16)
+      .nullable()
+      .default(null)
+      .describe(
+        "Where strips cluster besides the tips; by default under the rotors. Name it where cases with and without rotors shall have the same strips.",
+      ),
   })
   .describe("The wing.");
 
