@@ -86,11 +86,17 @@ const condition = z.union(
   { error: "takes a value, a list of values, or a block with from, to or both" },
 );
 
+const TOLERANCE_WORDS = 'takes a number above zero (absolute) or text like "0.5 % of mean"';
 const tolerance = z
-  .union([z.number().positive(), z.string().regex(/^\s*\d+(\.\d+)?([eE]-?\d+)?\s*%(\s*of\s+mean)?\s*$/)], {
-    error: 'takes a number above zero (absolute) or text like "0.5 % of mean"',
-  })
-  .refine((given) => Number.parseFloat(String(given)) > 0, { error: "takes a tolerance above zero" })
+  .union(
+    [
+      z.number({ error: TOLERANCE_WORDS }).positive({ error: TOLERANCE_WORDS }),
+      z
+        .string()
+        .regex(/^\s*(?=[\d.]*[1-9])\d{1,9}(\.\d{1,12})?\s*%(\s*of\s+mean)?\s*$/, { error: TOLERANCE_WORDS }),
+    ],
+    { error: TOLERANCE_WORDS },
+  )
   .describe('Largest half-width of the mean: a number (absolute), or text like "0.5 % of mean".');
 
 const positive = z.number().positive().max(1e9);

@@ -83,6 +83,8 @@ export interface Plan {
   readonly accept: AcceptRule;
   readonly onset: OnsetRule;
   readonly remedies: readonly Remedy[];
+  /** Largest harmless difference between a run and its companion; null or left out: the channel's own tolerance. */
+  readonly sufficiencyTolerance?: Tolerance | null;
   /** When the night ends: a local clock time (next occurrence) or a duration from launch; null for none. */
   readonly deadline: { readonly clock: string } | { readonly durationSeconds: number } | null;
   /** Worker processes; null: one per core. */

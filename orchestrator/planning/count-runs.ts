@@ -48,12 +48,11 @@ function countCompanions({ sufficiency, axes }: CampaignFile, points: number): n
 }
 
 /**
- * Refuses a campaign of very many runs unless exactly that number has been confirmed.
+ * Refuses a campaign of very many runs unless they have been said to be meant.
  *
- * @param confirmed the number that a person or script says is meant
  * @throws CAMPAIGN_TOO_LARGE with the number, and how to confirm it
  */
-export function refuseRunsByMistake(file: CampaignFile, fileName: string, confirmed?: number): void {
+export function refuseRunsByMistake(file: CampaignFile, fileName: string, meant: boolean): void {
   const { points, atMost } = countRuns(file);
   const product =
     file.axes.length > 1 && file.combine === "every combination"
@@ -65,13 +64,13 @@ export function refuseRunsByMistake(file: CampaignFile, fileName: string, confir
       where: fileName,
       fix: "Give the axes fewer values, take space_filling samples, or split the campaign.",
     });
-  if (atMost > RUNS_WITHOUT_ASKING && confirmed !== atMost)
+  if (atMost > RUNS_WITHOUT_ASKING && !meant)
     throw new AppError(
       "CAMPAIGN_TOO_LARGE",
       `${what}; more than ${RUNS_WITHOUT_ASKING} are not begun unasked`,
       {
         where: fileName,
-        fix: `If they are meant, say so with the number: --runs ${atMost}. Else give the axes fewer values, or take space_filling samples.`,
+        fix: `If they are meant, say so with --yes. Else give the axes fewer values, or take space_filling samples.`,
       },
     );
 }

@@ -48,7 +48,8 @@ export function parseYaml(text: string, fileName: string): YamlText {
       "Let an axis have a range with a count instead of long lists of values.",
     );
   const document = compose(text, lines, refuse);
-  if (document.errors.length > 0)
+  // An unknown tag is a mere warning to the library; here it would be a value that nobody understands.
+  if (document.errors.length + document.warnings.length > 0)
     throw problemsError(
       "YAML_SYNTAX",
       fileName,
@@ -72,7 +73,7 @@ function compose(text: string, lines: LineCounter, refuse: (offset: number, word
       merge: true,
       uniqueKeys: false,
       prettyErrors: false,
-      logLevel: "silent",
+      logLevel: "error",
     });
   } catch (error) {
     if (error instanceof RangeError) return refuse(0, `nested more than ${YAML_LIMITS.depth} levels deep`);
@@ -83,6 +84,8 @@ function compose(text: string, lines: LineCounter, refuse: (offset: number, word
 function yamlWords(error: { readonly code: string; readonly message: string }): string {
   if (error.code === "TAB_AS_INDENT" || /\btabs?\b/i.test(error.message))
     return "a tab stands where only spaces may indent";
+  if (error.code === "RESOURCE_EXHAUSTION" || error.message.includes("call stack"))
+    return `nested more than ${YAML_LIMITS.depth} levels deep`;
   if (error.code === "MULTIPLE_DOCS") return "a second document begins here; a campaign file holds one";
   const [first = error.message] = error.message.split("\n");
   return `not valid YAML: ${first}`;
@@ -107,6 +110,7 @@ class Converter {
   readonly #placeAt: (offset: number) => TextPlace;
   readonly #refuse: (offset: number, words: string, instead?: string) => never;
   #values = 0;
+  #depth = 0;
 
   constructor(
     places: Map<string, TextPlace>,
@@ -118,20 +122,26 @@ class Converter {
     this.#refuse = refuse;
   }
 
+  /** Value of a node; `from` is the place to name where the node is reached through an alias. */
   convert(node: unknown, path: Path, from?: number): unknown {
     const offset = from ?? startOf(node);
-    if (path.length > YAML_LIMITS.depth)
+    if (++this.#depth > YAML_LIMITS.depth)
       return this.#refuse(offset, `nested more than ${YAML_LIMITS.depth} levels deep`);
     if (++this.#values > YAML_LIMITS.values)
       return this.#refuse(offset, `more than ${YAML_LIMITS.values} values, aliases followed`);
     this.#note(path, offset);
+    const value = this.#content(node, path, offset);
+    this.#depth--;
+    return value;
+  }
+
+  #content(node: unknown, path: Path, offset: number): unknown {
     if (isAlias(node)) return this.convert(this.#target(node.source, offset), path, offset);
     const anchor = (node as { anchor?: string } | null)?.anchor;
     if (anchor !== undefined) this.#anchors.set(anchor, node);
     if (isMap(node)) return this.#map(node.items as Pair[], path);
     if (isSeq(node)) return node.items.map((item, index) => this.convert(item, [...path, index]));
-    if (isScalar(node)) return this.#scalar(node.value, offset);
-    return null;
+    return isScalar(node) ? this.#scalar(node.value, offset) : null;
   }
 
   #note(path: Path, offset: number): void {
