@@ -3,6 +3,16 @@
 export { AppError, ERROR_CODES, type ErrorCode } from "./app-error.ts";
 export { CAUTION } from "./caution.ts";
 export type { ChannelInfo, DeclaredPeriod } from "./channel.ts";
+export { crc32 } from "./crc32.ts";
+export {
+  decodeHistory,
+  encodeHistoryBlock,
+  encodeHistoryEnd,
+  encodeHistoryHead,
+  type HistoryHead,
+  type HistorySamples,
+  joinHistory,
+} from "./history-format.ts";
 export type {
   AveragingWindow,
   ChannelJudgement,

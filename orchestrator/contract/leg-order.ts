@@ -38,7 +38,7 @@ export const legRulesSchema = z.object({
 /** Manager to child: compute this stretch. Everything that the leg needs is in it or in the files it names. */
 export const legOrderSchema = z.object({
   kind: z.literal("leg"),
-  /** Unique for every try of every leg; files written by the leg carry it. */
+  /** Unique for every try of every leg. */
   legId: z.string().regex(/^[A-Za-z0-9._-]+$/),
   runId: z.string().min(1),
   attempt: z.int().min(1),
@@ -46,6 +46,8 @@ export const legOrderSchema = z.object({
   inputs: z.record(z.string(), z.unknown()),
   /** Absolute path of the data folder. */
   folder: z.string().min(1),
+  /** Path of the files that the leg writes, relative to the folder and without their ending; no other try has the same. */
+  files: z.string().regex(/^runs\/[A-Za-z0-9._/-]+$/),
   /** History of the attempt so far, in order and without gaps. */
   history: z.array(historyPieceSchema),
   checkpoint: checkpointPieceSchema.nullable(),

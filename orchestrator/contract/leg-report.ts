@@ -36,6 +36,10 @@ export const legReportSchema = z.object({
   message: z.string().nullable(),
   /** Error code that belongs to `failed`, `disk-full` and `damaged`. */
   code: z.string().nullable(),
+  /** Whether every demanded channel is accepted, at the last look or up to an onset. */
+  accepted: z.boolean(),
+  /** Whether the attempt is at its end: the solver cannot step on from here. */
+  cannotGoOn: z.boolean(),
   channels,
   periods,
   dtSeconds: z.number(),

@@ -5,6 +5,8 @@ export interface LegTicket {
   readonly attempt: number;
   /** Legs of the attempt committed when the ticket was made. */
   readonly legs: number;
+  /** Times that the same leg was begun and came to nothing in this night; tickets that differ are different tickets. */
+  readonly tries: number;
 }
 
 /** Legs in the order of the night. Delivery is at least once; the store makes the results exactly once. */

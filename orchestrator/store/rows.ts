@@ -62,7 +62,10 @@ export interface CampaignRun {
   readonly stopCause: StopCause | null;
   /** Steps of the current attempt that count for this campaign. */
   readonly steps: number;
+  /** Longest run of the current attempt, in its own steps. */
   readonly longestSteps: number;
+  /** Legs committed for this campaign. */
+  readonly legs: number;
   /** Seconds of stepping spent for this campaign on this run, all attempts together. */
   readonly seconds: number;
   readonly channels: readonly ChannelInfo[];
@@ -78,7 +81,8 @@ export interface CampaignState extends CampaignSummary {
 /** One try at a run, whoever asked for it. */
 export interface AttemptDetail {
   readonly attempt: number;
-  readonly remedy: AppliedRemedy | null;
+  /** Changed fields and their values; empty for the case as planned. */
+  readonly settings: Readonly<Record<string, unknown>>;
   readonly steps: number;
   readonly seconds: number;
   /** Null while it can be continued; else why it cannot. */
