@@ -1,0 +1,23 @@
+import { type AcceptRule, type HistoryJudgement, VERDICTS, type Verdict } from "../contract/index.ts";
+
+/** A verdict with the channel that decided it and why. */
+export interface RunVerdict {
+  readonly verdict: Verdict;
+  readonly words: string;
+}
+
+/** The verdict of a run by its averages: that of the worst demanded channel, the first one of them in the campaign's order. */
+export function runVerdict(judgement: HistoryJudgement | null, accept: AcceptRule): RunVerdict {
+  if (judgement === null) return { verdict: "needs-longer", words: "too short to be judged" };
+  const judged = accept.channels.map(({ name }) => {
+    const channel = judgement.channels[name];
+    return channel === undefined
+      ? { name, verdict: "failed" as const, words: "it was not recorded" }
+      : { name, verdict: channel.verdict, words: channel.words };
+  });
+  const rank = (verdict: Verdict) => VERDICTS.indexOf(verdict);
+  const worst = judged.reduce((a, b) => (rank(b.verdict) > rank(a.verdict) ? b : a));
+  if (worst.verdict === "accepted")
+    return { verdict: "accepted", words: "every demanded channel is accepted" };
+  return { verdict: worst.verdict, words: `${worst.name}: ${worst.words}` };
+}
