@@ -4,7 +4,7 @@ import type { LiveNight } from "./live-night.ts";
 
 /** Which part of a run's history, and how it is written. */
 export interface HistoryRequest {
-  /** The attempt that the verdict is about where none is named. */
+  /** The last attempt where none is named. */
   readonly attempt: number | null;
   /** All channels where none is named. */
   readonly channel: readonly string[];

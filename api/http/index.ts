@@ -3,6 +3,7 @@
 // answers are come by. Read answers.ts first, then app.ts.
 export type { Answers, HistoryRequest } from "./answers.ts";
 export { createApp } from "./app.ts";
+export { folderAnswers } from "./folder-answers.ts";
 export { type LiveNight, nextPicture, type WorkerPicture } from "./live-night.ts";
 export { answersAt, type Holder, remoteAnswers } from "./remote-answers.ts";
 export { type Serving, serveApp } from "./serve-app.ts";
