@@ -1,5 +1,16 @@
+// One command a file: each parses its options, calls what does the work, and prints the answer. Nothing here computes.
+// A new command is one file in this folder and one line below. Read check.ts first: it needs nothing but files.
 import type { Command } from "commander";
 import type { CommandIo } from "../cli-io.ts";
+import { historyCommand } from "./history.ts";
+import { loadsCommand } from "./loads.ts";
+import { stopCommand } from "./stop.ts";
+import { tellCommand } from "./tell.ts";
 
-/** Every command, in the order of the help. A new command is one file in this folder and one line here. */
-export const commands: readonly ((io: CommandIo) => Command)[] = [];
+/** Every command, in the order of the help. */
+export const commands: readonly ((io: CommandIo) => Command)[] = [
+  tellCommand,
+  loadsCommand,
+  historyCommand,
+  stopCommand,
+];
