@@ -94,7 +94,7 @@ function rangeWords(node: SchemaNode, unit: string | null): string {
   if (from === "" && to === "") return unit === null ? "" : ` in ${unit}`;
   if (low !== null && high === null && below === null) return ` of at least ${low}${inUnit}`;
   if (from === "" && high !== null) return ` of at most ${high}${inUnit}`;
-  return `${from}${to}${inUnit}`;
+  return `${from}${above !== null && high !== null ? `, up to ${high}` : to}${inUnit}`;
 }
 
 function countWords(node: SchemaNode): string {

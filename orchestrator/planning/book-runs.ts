@@ -73,7 +73,7 @@ function checkDraft(
   return { kind: "problems", problems: caseProblems(checked.issues, given, placeOf) };
 }
 
-/** Enters a run of the sweep. A variant may change nothing in some runs; two points that are equal are a mistake. */
+/** Enters a run of the sweep. A variant may come out equal to another run; two points as given that do are a mistake. */
 function enterOnce(
   campaign: Campaign,
   book: RunBook,
@@ -84,9 +84,8 @@ function enterOnce(
   const { run, isNew } = book.enter(draft, inputs);
   if (isNew) return;
   const first = labelOf(run);
-  const second = Object.values(draft.words).join(" · ");
-  const samePoint = Object.keys(draft.words).every((axis) => draft.words[axis] === run.draft.words[axis]);
-  if (!samePoint)
+  const second = labelOf({ ...run, draft, varied: draft.varied });
+  if (draft.name === null && run.draft.name === null)
     throw new AppError(
       "CAMPAIGN_INVALID",
       `two runs of the sweep come to the same case: ${first}, and ${second}`,
@@ -95,7 +94,7 @@ function enterOnce(
         fix: "An axis sets a field that makes no difference here, or a pair of values is given twice. Take one of them out.",
       },
     );
-  warnings.push(`variant ${draft.name} changes nothing at ${first}: one run serves both`);
+  warnings.push(`${second} is the same case as ${first}: one run serves both`);
 }
 
 function bookBaselines(campaign: Campaign, book: RunBook, axes: readonly ResolvedAxis[]): void {

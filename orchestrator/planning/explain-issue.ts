@@ -96,9 +96,9 @@ function explainUnion(
   context: IssueContext,
 ): Problem[] {
   const value = valueAt(context.value, path);
-  const ofRightType = issue.errors.filter(
-    (list) => !list.some((i) => i.path.length === 0 && i.code === "invalid_type"),
-  );
+  const isWrongType = (inner: Issue) =>
+    inner.path.length === 0 && (inner.code === "invalid_type" || inner.code === "invalid_value");
+  const ofRightType = issue.errors.filter((list) => !list.some(isWrongType));
   const structured = typeof value === "object" && value !== null;
   const [only] = ofRightType;
   if (structured && ofRightType.length === 1 && only !== undefined)

@@ -1,5 +1,6 @@
 import { isAlias, isMap, isScalar, isSeq, LineCounter, type Pair, parseDocument } from "yaml";
 import { problemsError, type TextPlace } from "./problem.ts";
+import { yamlSyntaxError } from "./yaml-syntax.ts";
 
 /** A plain value read from YAML, with the place of every field. */
 export interface YamlText {
@@ -50,16 +51,7 @@ export function parseYaml(text: string, fileName: string): YamlText {
   const document = compose(text, lines, refuse);
   // An unknown tag is a mere warning to the library; here it would be a value that nobody understands.
   if (document.errors.length + document.warnings.length > 0)
-    throw problemsError(
-      "YAML_SYNTAX",
-      fileName,
-      [...document.errors, ...document.warnings].map((e) => ({
-        place: placeAt(e.pos[0]),
-        field: "",
-        words: yamlWords(e),
-      })),
-      "Mend the file at that place; indentation is made of spaces, and text with : or # in it stands in quotes.",
-    );
+    throw yamlSyntaxError([...document.errors, ...document.warnings], fileName, placeAt);
   const places = new Map<string, TextPlace>();
   const value = new Converter(places, placeAt, refuse).convert(document.contents, []);
   return { value, placeOf: (path) => nearestPlace(places, path) };
@@ -76,20 +68,12 @@ function compose(text: string, lines: LineCounter, refuse: (offset: number, word
       logLevel: "error",
     });
   } catch (error) {
-    if (error instanceof RangeError) return refuse(0, `nested more than ${YAML_LIMITS.depth} levels deep`);
+    if (error instanceof RangeError) return refuse(0, NESTED);
     throw error;
   }
 }
 
-function yamlWords(error: { readonly code: string; readonly message: string }): string {
-  if (error.code === "TAB_AS_INDENT" || /\btabs?\b/i.test(error.message))
-    return "a tab stands where only spaces may indent";
-  if (error.code === "RESOURCE_EXHAUSTION" || error.message.includes("call stack"))
-    return `nested more than ${YAML_LIMITS.depth} levels deep`;
-  if (error.code === "MULTIPLE_DOCS") return "a second document begins here; a campaign file holds one";
-  const [first = error.message] = error.message.split("\n");
-  return `not valid YAML: ${first}`;
-}
+const NESTED = `nested too deeply: a campaign file has at most ${YAML_LIMITS.depth} levels`;
 
 const keyOf = (path: readonly PropertyKey[]): string => JSON.stringify(path.map(String));
 
@@ -125,8 +109,7 @@ class Converter {
   /** Value of a node; `from` is the place to name where the node is reached through an alias. */
   convert(node: unknown, path: Path, from?: number): unknown {
     const offset = from ?? startOf(node);
-    if (++this.#depth > YAML_LIMITS.depth)
-      return this.#refuse(offset, `nested more than ${YAML_LIMITS.depth} levels deep`);
+    if (++this.#depth > YAML_LIMITS.depth) return this.#refuse(offset, NESTED);
     if (++this.#values > YAML_LIMITS.values)
       return this.#refuse(offset, `more than ${YAML_LIMITS.values} values, aliases followed`);
     this.#note(path, offset);

@@ -47,7 +47,7 @@ describe("parseYaml", () => {
     ["a field given twice", "a: 1\nb: 2\na: 3\n", 3, "a is given twice"],
     ["a second document", "a: 1\n---\nb: 2\n", 2, "a second document"],
     ["an alias of nothing", "a: *b\n", 1, "points at nothing"],
-    ["an unknown tag", "a: !!python/object x\n", 1, "not valid YAML"],
+    ["an unknown tag", "a: !!python/object x\n", 1, "is a tag that means nothing here"],
     [
       "a name that reaches the prototype",
       "a:\n  __proto__: { x: 1 }\n",
@@ -65,8 +65,8 @@ describe("parseYaml", () => {
   });
 
   it("refuses an alias that contains itself", () => {
-    expect(refusal("a: &a [*a]\n").message).toContain("nested more than 32 levels");
-    expect(refusal("a: &a\n  <<: *a\n").message).toContain("nested more than 32 levels");
+    expect(refusal("a: &a [*a]\n").message).toContain("nested too deeply");
+    expect(refusal("a: &a\n  <<: *a\n").message).toContain("nested too deeply");
   });
 
   it("does not unfold a bomb of aliases", () => {
@@ -84,7 +84,7 @@ describe("parseYaml", () => {
 
   it("refuses what is nested too deeply, one level or 200 000", () => {
     for (const depth of [YAML_LIMITS.depth, YAML_LIMITS.depth + 20, 200_000])
-      expect(refusal(`a: ${"[".repeat(depth)}${"]".repeat(depth)}`).message).toContain("nested more than");
+      expect(refusal(`a: ${"[".repeat(depth)}${"]".repeat(depth)}`).message).toContain("nested too deeply");
   });
 
   it("refuses a megabyte and more, and reads half a megabyte of fields within seconds", () => {
