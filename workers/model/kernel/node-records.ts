@@ -2,19 +2,19 @@ import { AppError } from "../../../orchestrator/contract/index.ts";
 import type { Lattice } from "./lattice.ts";
 
 /** Circulations below this size, m²/s, count as zero, so that no product of them is a slow subnormal number. */
-export const CIRCULATION_FLOOR = 1e-20;
+const CIRCULATION_FLOOR = 1e-20;
 
 /** 1 / 2π, which turns a circulation into the factor of the segment formula. */
-export const INV_TWO_PI = 1 / (2 * Math.PI);
+const INV_TWO_PI = 1 / (2 * Math.PI);
 
 /** Numbers a node: x, y, z, μ², then six for the edge that arrives along the row, six for the one along the column. */
 export const RECORD = 16;
 
 /** Offset of the spanwise edge (r, c-1) -> (r, c) in the record of node (r, c): e, ℓ², floor, Γ/2π. */
-export const SPANWISE = 4;
+const SPANWISE = 4;
 
 /** Offset of the streamwise edge (r-1, c) -> (r, c) in the record of node (r, c), laid out like the spanwise one. */
-export const STREAMWISE = 10;
+const STREAMWISE = 10;
 
 /**
  * Writes what the segment formula needs of every node and edge, once for all points, to `records`.

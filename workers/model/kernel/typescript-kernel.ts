@@ -2,6 +2,9 @@ import type { Lattice } from "./lattice.ts";
 import { packRecords, RECORD } from "./node-records.ts";
 import type { PairKernel, Points, Velocities } from "./pair-kernel.ts";
 
+/** A constant of this module: the compiler folds it, but reads an imported one anew in every pass of the loop. */
+const STRIDE = RECORD;
+
 let records = new Float64Array(0);
 let above = new Float64Array(0);
 
@@ -65,7 +68,7 @@ function induceOne(
       let v = 0;
       let w = 0;
       let left = 0;
-      for (let c = 0; c < cols; c++, i += RECORD) {
+      for (let c = 0; c < cols; c++, i += STRIDE) {
         const rx = px - rec[i]!;
         const ry = py - rec[i + 1]!;
         const rz = pz - rec[i + 2]!;
