@@ -7,6 +7,7 @@ import type { CaseDescription, DescribeCase } from "./case-description.ts";
 import { axesProblems } from "./check-axes.ts";
 import { caseCatalogue } from "./check-case.ts";
 import { changesProblems, namesProblems, VARIANT_AXIS } from "./check-names.ts";
+import { remedyProblems } from "./check-remedies.ts";
 import { refuseRunsByMistake } from "./count-runs.ts";
 import { AS_GIVEN } from "./draft-sweep.ts";
 import { orderOfNight } from "./order-of-night.ts";
@@ -41,6 +42,7 @@ export function expandCampaign(campaign: Campaign, options: PlanningOptions): Pl
   const axes = file.axes.map((axis, i) => resolveAxis(axis, i, caseCatalogue));
   refuseProblems(campaign, namesProblems(campaign, axes));
   const booked = bookRuns(campaign, axes, options.modelVersion);
+  refuseProblems(campaign, remedyProblems(campaign, booked.runs));
   const channels = new Map<string, ChannelInfo>();
   const runs = booked.runs.map((run, i) => {
     const description = describeRun(campaign, run, options.describe);

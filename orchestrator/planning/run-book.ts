@@ -20,7 +20,7 @@ export interface BookedRun {
 
 /** Runs by content: drafts that come out equal are one run. */
 export class RunBook {
-  readonly #runs = new Map<string, BookedRun & { readonly identity: string }>();
+  readonly #runs = new Map<string, BookedRun>();
   readonly #solver: Pick<RunIdentity, "solver" | "modelVersion">;
   readonly #idOf: (identity: RunIdentity) => string;
 
@@ -44,10 +44,9 @@ export class RunBook {
    */
   enter(draft: RunDraft, inputs: Inputs): { readonly run: BookedRun; readonly isNew: boolean } {
     const id = this.#idOf({ ...this.#solver, inputs });
-    const identity = canonicalJson(inputs);
     const there = this.#runs.get(id);
     if (there !== undefined) {
-      if (there.identity !== identity)
+      if (canonicalJson(there.inputs) !== canonicalJson(inputs))
         throw new AppError("BUG", `two different cases come to the same run id ${id}`, {
           fix: "Change any input of one of them by a hair (a note does not count), and plan again.",
         });
@@ -58,7 +57,6 @@ export class RunBook {
       role: draft.role,
       draft,
       inputs,
-      identity,
       varied: draft.varied,
       baselineRunId: null,
       companionOf: null,

@@ -176,6 +176,12 @@ describe("a campaign that cannot be planned is refused with place, field and wha
       "case.numerics.rotor_wake_rows: 1 is out of range; takes a whole number from 6 to 2000 rows",
     ],
     [
+      "a remedy that makes an impossible case",
+      campaignText("remedies: [{ name: x, set: { numerics.step_deg: 90 }, cost: much }]"),
+      9,
+      "case.numerics.step_deg: 90 is out of range; takes a number from 1 to 45 deg",
+    ],
+    [
       "two single cases of one name",
       campaignText(
         "single_cases: [{ name: x, set: { wing.span_m: 1 } }, { name: x, set: { wing.span_m: 3 } }]",
