@@ -55,6 +55,12 @@ const circlePath = z
     start_deg: number(-360, 360)
       .default(0)
       .describe("Place on the circle at the start, degrees from the horizontal, turning upwards."),
+    tether_length_m: number(0.2, 1e5)
+      .nullable()
+      .default(null)
+      .describe(
+        "Length of the straight tether from a point on the circle's axis upwind; by default so long that it pulls along the axis.",
+      ),
   })
   .describe("A circle flown across the wind.");
 
@@ -74,8 +80,21 @@ const tablePath = z
       .max(10_000)
       .describe("Positions of the wing's mid span in time, at least four, times rising from 0."),
     closed: z.boolean().default(false).describe("Whether the path repeats after its last point."),
+    normal: z
+      .enum(["downwind", "up"])
+      .default("downwind")
+      .describe("Where the wing's upper side looks: along the wind, or up, square to the path."),
   })
   .describe("A flight path through given positions (cubic in between).");
+
+const wingStation = z.strictObject({
+  half_span_fraction: number(0, 1).describe(
+    "Place from mid span (0) to the tip (1); places rise from 0 to 1.",
+  ),
+  chord_m: number(1e-4, 50).describe("Chord there, m; linear in between."),
+  twist_deg: number(-30, 30).default(0).describe("Twist there against mid span, nose up positive, degrees."),
+  aft_m: number(-100, 100).default(0).describe("Quarter chord there behind the one at mid span, m."),
+});
 
 const wingSchema = z
   .strictObject({
@@ -93,6 +112,15 @@ const wingSchema = z
     camber_position_percent: number(10, 90)
       .default(40)
       .describe("Place of the largest camber behind the leading edge, % of the chord."),
+    stations: z
+      .array(wingStation)
+      .min(2)
+      .max(200)
+      .nullable()
+      .default(null)
+      .describe(
+        "Planform and twist by table, both halves alike; when given it replaces chords, sweep and twist.",
+      ),
     pitch_deg: number(-60, 60)
       .default(0)
       .describe("Pitch of the mid-span chord against the flight direction, nose up positive, degrees."),
