@@ -30,5 +30,7 @@ export interface Answers {
   history(runId: string, request: HistoryRequest): Promise<AsyncIterable<string>>;
   /** Stops a campaign; it stays stopped until it is launched again. @throws NOT_FOUND */
   stop(campaign: string): Promise<void>;
+  /** Forgets a campaign and deletes what only it asked for. @throws NOT_FOUND, STATE_CONFLICT while it is computed */
+  remove(campaign: string): Promise<{ readonly runsDeleted: number; readonly runsKept: number }>;
   close(): Promise<void>;
 }

@@ -55,6 +55,9 @@ function addQuestions(app: Express, answers: Answers): void {
     await answers.stop(parsed(namePath, request.params, "path").name);
     response.json({ stopped: true });
   });
+  app.delete("/api/campaigns/:name", async (request, response) => {
+    response.json(await answers.remove(parsed(namePath, request.params, "path").name));
+  });
   app.get("/api/runs/:name", async (request, response) => {
     response.json(await answers.runDetail(parsed(namePath, request.params, "path").name));
   });

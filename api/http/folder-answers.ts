@@ -1,3 +1,5 @@
+import { rm } from "node:fs/promises";
+import { join } from "node:path";
 import { AppError } from "../../orchestrator/contract/index.ts";
 import { type HistoryTable, historyCsv, historyJson } from "../../orchestrator/exports/history-text.ts";
 import { campaignLoads, nightIn } from "../../orchestrator/night/index.ts";
@@ -32,8 +34,24 @@ export function folderAnswers(folder: DataFolder, liveNight: () => LiveNight | n
       const going = nightIn(folder);
       if (going?.campaign === campaign) await going.night.stop();
     },
+    remove: (campaign) => removeFromFolder(folder, campaign),
     close: async () => {},
   };
+}
+
+async function removeFromFolder(
+  folder: DataFolder,
+  campaign: string,
+): Promise<{ runsDeleted: number; runsKept: number }> {
+  if (nightIn(folder)?.campaign === campaign)
+    throw new AppError("STATE_CONFLICT", `campaign "${campaign}" is being computed`, {
+      where: campaign,
+      fix: `Stop it first: midwatch stop ${campaign}.`,
+    });
+  const { files, runsDeleted, runsKept } = await folder.store.remove(campaign);
+  // Files that outlive a crash here are swept when the folder is opened the next time.
+  for (const file of files) await rm(join(folder.dir, file), { force: true });
+  return { runsDeleted, runsKept };
 }
 
 function historyTable(history: RunHistory, wanted: readonly string[]): HistoryTable {

@@ -54,6 +54,10 @@ export function remoteAnswers(holder: Holder): Answers {
     stop: async (campaign) => {
       await ask(holder, "POST", `/api/campaigns/${encodeURIComponent(campaign)}/stop`);
     },
+    remove: async (campaign) => {
+      const path = `/api/campaigns/${encodeURIComponent(campaign)}`;
+      return checked(await ask(holder, "DELETE", path), removalSchema, path);
+    },
     close: async () => {},
   };
 }
@@ -64,11 +68,12 @@ const objectOf = <T>(key: string): z.ZodType<T> =>
   z.custom<T>((value) => typeof value === "object" && value !== null && key in value);
 const campaignsSchema = z.object({ campaigns: z.array(objectOf<CampaignSummary>("standing")) });
 const nightSchema = z.object({ night: objectOf<LiveNight>("workers").nullable() });
+const removalSchema = z.object({ runsDeleted: z.int(), runsKept: z.int() });
 const loadsSchema = z.object({ loads: z.array(objectOf<LoadRow>("runVerdict")) });
 
 async function ask(
   holder: Holder,
-  method: "GET" | "POST",
+  method: "GET" | "POST" | "DELETE",
   path: string,
   timeoutMs = ANSWER_MS,
 ): Promise<Response> {

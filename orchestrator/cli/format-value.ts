@@ -39,3 +39,8 @@ export function formatDuration(seconds: number): string {
   const minutes = Math.round(whole / 60);
   return `${Math.floor(minutes / 60)} h ${String(minutes % 60).padStart(2, "0")} min`;
 }
+
+/** A count with its noun: `1 run`, `3 runs`. */
+export function countWords(n: number, noun: string): string {
+  return `${n} ${noun}${n === 1 ? "" : "s"}`;
+}

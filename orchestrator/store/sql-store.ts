@@ -3,6 +3,7 @@ import { campaignRun, campaignState, campaigns, runDetail } from "./campaign-que
 import { claimLeg, historyPieces } from "./claim-leg.ts";
 import { commitLeg, StaleFence } from "./commit-leg.ts";
 import { registerCampaign } from "./register-campaign.ts";
+import { removeCampaign } from "./remove-campaign.ts";
 import type { CampaignStanding } from "./rows.ts";
 import { rulesText } from "./rules-text.ts";
 import { inTransaction, type SqlPool } from "./sql-pool.ts";
@@ -31,6 +32,7 @@ export function createSqlStore(pool: SqlPool): Store {
       await campaignState(pool, campaign);
       await setStanding(campaign, "stopped");
     },
+    remove: (campaign) => inTransaction(pool, (sql) => removeCampaign(sql, campaign)),
     claim: (campaign, runId, attempt, legs) =>
       inTransaction(pool, (sql) => claimLeg(sql, { campaign, runId, attempt, legs })),
     commit: (leg) => commit(pool, leg),

@@ -7,6 +7,7 @@ import type {
   Plan,
   Verdict,
 } from "../contract/index.ts";
+import type { Removal } from "./remove-campaign.ts";
 import type {
   AppliedRemedy,
   CampaignRun,
@@ -46,6 +47,12 @@ export interface Store {
   setStanding(campaign: string, standing: CampaignStanding, deadlineMs?: number | null): Promise<void>;
   /** Marks a campaign as stopped until it is launched again. */
   markStop(campaign: string): Promise<void>;
+  /**
+   * Forgets a campaign, and every run that no other campaign asks for.
+   *
+   * @throws NOT_FOUND
+   */
+  remove(campaign: string): Promise<Removal>;
 
   /** Takes a leg; null when its ticket is out of date. What was claimed before on the same attempt can no longer be committed. */
   claim(campaign: string, runId: string, attempt: number, legs: number): Promise<LegClaim | null>;

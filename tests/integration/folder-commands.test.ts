@@ -1,4 +1,4 @@
-import { readFileSync, statSync } from "node:fs";
+import { existsSync, readFileSync, statSync } from "node:fs";
 import { join } from "node:path";
 import { parse } from "csv-parse/sync";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
@@ -181,6 +181,32 @@ describe("a folder that a process holds", () => {
     expect(status).toBe(2);
     expect(stderr).toContain("code:  DATA_FOLDER_BUSY");
     expect(stderr).toContain(`process ${process.pid}`);
+  });
+});
+
+describe("removal", () => {
+  it("asks first, and takes silence for a no", async () => {
+    const { status, stderr } = await run("remove", "invented");
+    expect(status).toBe(2);
+    expect(stderr).toContain("not confirmed; nothing was removed");
+    expect(await answerOf("tell")).toContain("invented");
+  });
+
+  it("takes with it what only this campaign asked for, and leaves what others ask for too", async () => {
+    const folder = await open();
+    const other = testPlan({ name: "other", runs: [{ label: "calm", inputs: steady(1) }] });
+    await folder.store.register(other, 0);
+    await folder.close();
+    const answer = JSON.parse(await answerOf("remove", "invented", "--yes", "--json"));
+    expect(answer).toEqual({ campaign: "invented", runsDeleted: 2, runsKept: 1 });
+    expect(await answerOf("history", calm!)).toBe(direct.get(`history ${calm}`));
+    expect((await run("history", wild!)).stderr).toContain("NOT_FOUND");
+    expect(existsSync(join(data, "runs", wild!, "1.1"))).toBe(false);
+    expect(existsSync(join(data, "runs", calm!, "1.1"))).toBe(true);
+    expect(await answerOf("tell")).not.toContain("invented");
+    expect(await answerOf("remove", "other", "--yes")).toContain("other is removed, with 1 run");
+    expect(existsSync(join(data, "runs", calm!, "1.1"))).toBe(false);
+    expect(await answerOf("tell")).toContain("No campaign has been launched");
   });
 });
 

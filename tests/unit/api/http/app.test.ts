@@ -39,6 +39,10 @@ const answers: Answers = {
   stop: async (campaign) => {
     asked.push(["stop", campaign]);
   },
+  remove: async (campaign) => {
+    asked.push(["remove", campaign]);
+    return { runsDeleted: 3, runsKept: 1 };
+  },
   close: async () => {},
 };
 
@@ -155,6 +159,8 @@ describe("the other side of it", () => {
     expect(await remote.liveNight()).toBeNull();
     await remote.stop("lantern");
     expect(asked.at(-1)).toEqual(["stop", "lantern"]);
+    expect(await remote.remove("lantern")).toEqual({ runsDeleted: 3, runsKept: 1 });
+    expect(asked.at(-1)).toEqual(["remove", "lantern"]);
     let text = "";
     for await (const piece of await remote.history("a1b2", { attempt: null, channel: [], format: "csv" }))
       text += piece;
