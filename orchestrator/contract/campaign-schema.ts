@@ -209,7 +209,7 @@ export const campaignSchema = z
     notes: text.default("").describe("Anything worth remembering; goes into the report."),
     solver: name
       .default("built-in")
-      .describe("Solver: the built-in model, or one registered on the worker's machine."),
+      .describe("Solver that computes the runs; built-in is midwatch's own model."),
     case: z
       .record(z.string(), z.unknown())
       .describe("The base case; axes, variants and single cases change it."),
@@ -266,8 +266,8 @@ export const campaignSchema = z
       .max(1000)
       .default([])
       .describe("Cases outside the sweep: the base case with changes."),
-    accept,
-    onset: onset.prefault({}),
+    accept: accept.describe("When the averages of a run are good enough, and how long a run may take."),
+    onset: onset.prefault({}).describe("What is watched for the wake going unstable."),
     remedies: z
       .array(
         z.strictObject({
