@@ -38,6 +38,8 @@ export const FOLDERS: readonly string[] = [
   "api",
   "api/http",
   "checks",
+  "checks/estimators",
+  "checks/mean",
   "checks/onset",
   "orchestrator",
   "orchestrator/cli",
