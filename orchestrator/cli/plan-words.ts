@@ -4,7 +4,7 @@ import { secondsUntil } from "../planning/index.ts";
 import { formatDuration } from "./format-value.ts";
 
 /** Runs printed one a line; of a longer list the beginning is shown. */
-export const ROWS_SHOWN = 60;
+const ROWS_SHOWN = 60;
 
 /** When the night begins, on how many workers, and how much of the plan is printed. */
 export interface PlanView {

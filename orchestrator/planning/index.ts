@@ -5,8 +5,6 @@ export { campaignJsonSchema } from "./campaign-json-schema.ts";
 export type { CaseDescription, DescribeCase } from "./case-description.ts";
 export { countRuns, RUNS_MAX, RUNS_WITHOUT_ASKING } from "./count-runs.ts";
 export { expandCampaign, type PlanningOptions } from "./expand-campaign.ts";
-export { applyChanges, type Inputs } from "./field-path.ts";
 export { type Campaign, parseCampaign } from "./parse-campaign.ts";
 export { secondsUntil } from "./predict-cost.ts";
 export { readCampaign } from "./read-campaign.ts";
-export { runId } from "./run-id.ts";

@@ -2,7 +2,7 @@ import { createHash } from "node:crypto";
 import { AppError } from "../contract/index.ts";
 
 /** Hexadecimal characters of a run id: 48 bits, a clash among 10^5 runs has a chance of 2e-5, and is refused. */
-export const RUN_ID_LENGTH = 12;
+const RUN_ID_LENGTH = 12;
 
 /**
  * Text that is the same for equal values: keys sorted, numbers in their shortest form, minus zero as zero. Fields that are
