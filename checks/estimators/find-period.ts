@@ -50,7 +50,9 @@ function strongestLine(x: Float64Array): number | null {
   const to = Math.min(power.length - 2, Math.floor(size / SAMPLES_MIN));
   let peak = from;
   for (let k = from; k <= to; k++) if (power[k]! > power[peak]!) peak = k;
-  if (to <= from || !(power[peak]! > 0)) return null;
+  // At the edge of the search the highest bin may be the flank of something slower.
+  const summit = power[peak]! >= power[peak - 1]! && power[peak]! >= power[peak + 1]!;
+  if (to <= from || !(power[peak]! > 0) || !summit) return null;
   let total = 0;
   for (let k = 1; k < power.length; k++) total += power[k]!;
   const reach = Math.ceil(2 * scale);

@@ -7,7 +7,7 @@ import { lengthOfLookBefore } from "./look-schedule.ts";
  * Judges the average of one channel of a record that is sound from its first to its last sample.
  *
  * Two looks, at the whole record and at its first 80 %, have to agree before anything is accepted: chance that favours
- * one look rarely favours both. The rule is the same for a finished record and for one that still grows; the latter is
+ * one look rarely favours both. Records without noise need one look only. The rule is the same for a finished record and for one that still grows; the latter is
  * judged at the lengths that `nextLookLength` names, each of which is 1.25 times the one before.
  *
  * Limits: relaxations much slower than the record are not seen by any look. See `judgeStretch`.
@@ -22,6 +22,8 @@ export function judgeRecord(x: Float64Array, given: JudgeOptions): ChannelJudgem
   const whole = withDefaultsSaid(judgeStretch(x, options), options);
   if (whole.verdict !== "accepted") return whole;
   if (x.length < options.samplesMin) return tooShort(whole, x.length, options);
+  // Without noise there is no luck that a second look could expose.
+  if (whole.effectiveSamples === null) return whole;
   const before = judgeStretch(x.subarray(0, lengthOfLookBefore(x.length)), options);
   return before.verdict === "accepted"
     ? { ...whole, tests: [...whole.tests, twoLooks(true, before)] }
