@@ -3,5 +3,6 @@
 export { kernelAgrees } from "./kernel-self-test.ts";
 export { createLattice, dropRows, type Lattice, pushRow } from "./lattice.ts";
 export type { PairKernel, Points, Velocities } from "./pair-kernel.ts";
+export { TREE_KERNEL_NAME, treeKernel } from "./tree-kernel.ts";
 export { typescriptKernel } from "./typescript-kernel.ts";
 export { type KernelVariant, MIXED_KERNEL_NAME, wasmKernel } from "./wasm-kernel.ts";
