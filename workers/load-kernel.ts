@@ -91,7 +91,7 @@ function withTree(bytes: Uint8Array, relativeError: number, direct: LoadedKernel
   const kernel = treeKernel({ bytes, relativeError, direct: direct.kernel });
   return {
     kernel,
-    notice: `treecode to a relative error of ${relativeError}; below 1024 nodes ${direct.notice}`,
+    notice: `treecode to a relative error of ${relativeError}; where it does not pay, ${direct.notice}`,
   };
 }
 

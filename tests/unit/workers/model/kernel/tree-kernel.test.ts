@@ -49,9 +49,15 @@ const WAKES: [string, () => Lattice[]][] = [
   ["a rotor wake", () => [helixWake(200, 9)]],
   ["a wing wake", () => [wingWake(60, 33)]],
   ["both", () => [helixWake(150, 9), wingWake(50, 25)]],
+  ["twelve small rotor wakes", () => Array.from({ length: 12 }, (_, k) => aside(helixWake(40, 7), 0.6 * k))],
   ["a crumpled sheet of random strength", () => [sheet(60, 30, seeded(987_654_321))]],
   ["a single filament of 1500 nodes", () => [helixWake(1500, 1)].map(withCirculation)],
 ];
+
+function aside(lattice: Lattice, distance: number): Lattice {
+  for (let i = 0; i < lattice.y.length; i++) lattice.y[i] = lattice.y[i]! + distance;
+  return lattice;
+}
 
 /** A one-column lattice has no rings: gives it a circulation along its length. */
 function withCirculation(lattice: Lattice): Lattice {
@@ -128,7 +134,7 @@ describe("the treecode", () => {
     expect(run(used, small, points)).toEqual(run(tree(1e-4), small, points));
   });
 
-  it("hands small lattices, and those that induce nothing on themselves, to the direct kernel", () => {
+  it("hands small wakes, and lattices that induce nothing on themselves, to the direct kernel", () => {
     const straight = filament(
       Array.from({ length: 1100 }, (_, i) => [i / 64, 0, 0] as const),
       0.01,
