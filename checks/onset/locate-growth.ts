@@ -6,6 +6,7 @@ import { DUST_SHARE } from "./channel-monitor.ts";
 import { fitGrowth, type GrowthFit, onsetBand } from "./growth-fit.ts";
 import type { Located } from "./located.ts";
 import type { MonitorLayout } from "./monitor-layout.ts";
+import { growingScaleLikelihood } from "./scale-likelihood.ts";
 
 /** Blocks after an alarm that are used where the history goes on. */
 const BLOCKS_AFTER = 20;
@@ -14,6 +15,11 @@ const FIRST_BASELINE = 0.6;
 /** A rise within this many blocks and e-folds has no growth rate: it is a jump. */
 const ABRUPT_BLOCKS = 3;
 const ABRUPT_EFOLDS = 4;
+/**
+ * What a jump has to gain over a growth in twice the log likelihood to be preferred: it has two parameters fewer, and the
+ * growth was not fitted by likelihood.
+ */
+const JUMP_ADVANTAGE = -10;
 /** Rate, e-folds a block, above which shorter blocks are used. */
 const FAST_RATE = 0.5;
 
@@ -42,10 +48,14 @@ export function locateGrowth(
   for (let pass = 0; pass < 2; pass++) {
     baselineEnd = Math.round(Math.max(from + 4 * block, Math.min(alarm.index, fit.band[0] - block)));
     residual = baselineResidual(x, layout, { from, baselineEnd, to }, DUST_SHARE);
-    fit = fitBlocks(residual, block);
+    fit = fitBlocks(residual, block, { near: fit });
   }
-  if (isAbrupt(fit)) return locateJump(residual, fit, layout);
-  if (fit.rate * block > FAST_RATE) fit = fitFast(residual, fit, block);
+  const maybeJump = isAbrupt(fit);
+  if (maybeJump || fit.rate * block > FAST_RATE) fit = fitFast(residual, fit, block);
+  if (maybeJump) {
+    const jump = locateJump(residual, fit, layout);
+    if (jump.advantage > JUMP_ADVANTAGE) return jump.located;
+  }
   return growthFound(residual, fit, alarm.monotone);
 }
 
@@ -60,9 +70,19 @@ interface SampleFit {
   readonly base: number;
 }
 
-function fitBlocks(residual: BaselineResidual, block: number, from = residual.from): SampleFit {
+function fitBlocks(
+  residual: BaselineResidual,
+  block: number,
+  { from = residual.from, near }: { from?: number; near?: SampleFit } = {},
+): SampleFit {
   const y = blockLogRms(residual.e, { from, to: residual.to, block, floor: residual.floor });
-  const fit: GrowthFit = fitGrowth(y);
+  const inBlocks = (sample: number) => (sample - from) / block - 0.5;
+  const start = near && {
+    onset: inBlocks(near.onset),
+    rate: near.rate * block,
+    saturation: inBlocks(near.saturation),
+  };
+  const fit: GrowthFit = fitGrowth(y, start);
   const sample = (j: number) => from + (j + 0.5) * block;
   const [first, last] = onsetBand(y, fit);
   return {
@@ -86,26 +106,32 @@ function fitFast(residual: BaselineResidual, fit: SampleFit, block: number): Sam
   if (short >= block) return fit;
   const back = Math.floor(Math.min(fit.onset - residual.from, 20 * block) / short);
   const start = Math.max(residual.from, Math.round(fit.onset) - back * short);
-  return fitBlocks(residual, short, start);
+  return fitBlocks(residual, short, { from: start });
 }
 
-function locateJump(residual: BaselineResidual, fit: SampleFit, layout: MonitorLayout): Located {
+/** The jump that is most likely around a fit, and what it gains over the fit in twice the log likelihood. */
+function locateJump(
+  residual: BaselineResidual,
+  fit: SampleFit,
+  layout: MonitorLayout,
+): { located: Located; advantage: number } {
   const { e, from, to, floor, correlation } = residual;
   const centre = Math.round(fit.onset);
   const a = Math.max(from, centre - 20 * layout.block);
   const b = Math.min(to, centre + 8 * layout.block);
   const squares = correlation * correlation;
-  const change = bestChange(meanSquareCost(e.subarray(a, b), 0, floor), {
-    from: 0,
-    to: b - a,
-    shortest: 5,
-    inflation: (1 + squares) / (1 - squares),
-  });
+  const inflation = (1 + squares) / (1 - squares);
+  const cost = meanSquareCost(e.subarray(a, b), 0, floor);
+  const change = bestChange(cost, { from: 0, to: b - a, shortest: 5, inflation });
+  const split = -cost(0, change.index) - cost(change.index, b - a) - (b - a);
   return {
-    kind: "wake-breakdown",
-    index: a + change.index,
-    band: [a + change.band[0] - 2, a + change.band[1] + 2],
-    growthPerStep: null,
+    located: {
+      kind: "wake-breakdown",
+      index: a + change.index,
+      band: [a + change.band[0] - 2, a + change.band[1] + 2],
+      growthPerStep: null,
+    },
+    advantage: (split - growingScaleLikelihood(e, { from: a, to: b, floor }, fit)) / inflation,
   };
 }
 
