@@ -19,9 +19,13 @@ export function cycleMeans(x: Float64Array, period: number): { means: Float64Arr
   const end = x.length - 1;
   const cycles = Math.floor(end / period + 1e-9);
   if (!(period >= 2) || cycles < 1)
-    throw new AppError("HISTORY_INVALID", `a period of ${period} samples in a series of ${x.length}`, {
-      fix: "give a period of at least 2 samples that fits into the series",
-    });
+    throw new AppError(
+      "HISTORY_INVALID",
+      `a period of ${period} samples can't be averaged over in a series of ${x.length}`,
+      {
+        fix: "give a period of at least 2 samples that fits into the series",
+      },
+    );
   const integral = runningIntegral(x);
   const place = (j: number) => Math.max(0, end - (cycles - j) * period);
   const means = new Float64Array(cycles);

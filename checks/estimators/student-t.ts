@@ -18,7 +18,7 @@ export function studentTCdf(t: number, df: number): number {
   const square = t * t;
   // Whichever argument is the smaller one keeps its digits.
   const tail =
-    square < df
+    square < 1
       ? 0.5 * (1 - incompleteBeta(square / (df + square), 0.5, df / 2))
       : 0.5 * incompleteBeta(df / (df + square), df / 2, 0.5);
   return t > 0 ? 1 - tail : tail;
