@@ -13,7 +13,7 @@ export interface Zone {
 export const ZONES: Readonly<Record<string, Zone>> = {
   "orchestrator/contract": { imports: [], npm: ["zod"], node: false },
   checks: { imports: ["orchestrator/contract"], npm: ["simple-statistics", "fft.js"], node: false },
-  "workers/model": { imports: ["orchestrator/contract"], npm: ["simple-statistics"], node: false },
+  "workers/model": { imports: ["orchestrator/contract"], npm: ["ml-matrix"], node: false },
   workers: { imports: ["orchestrator/contract", "checks", "workers/model"], npm: "*", node: true },
   orchestrator: { imports: ["orchestrator/contract", "checks"], npm: "*", node: true },
   "orchestrator/cli": {
@@ -53,6 +53,15 @@ export const FOLDERS: readonly string[] = [
   "orchestrator/store",
   "workers",
   "workers/model",
+  "workers/model/circulations",
+  "workers/model/describe",
   "workers/model/kernel",
   "workers/model/kernel/assembly",
+  "workers/model/loads",
+  "workers/model/path",
+  "workers/model/record",
+  "workers/model/rotor",
+  "workers/model/state",
+  "workers/model/wake",
+  "workers/model/wing",
 ];

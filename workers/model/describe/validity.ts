@@ -33,7 +33,7 @@ export function validity(inputs: Case, times: Timing, path: FlightPath): CaseWar
   checkTether(inputs);
   return [
     ...stripWarnings(inputs),
-    ...stepWarnings(inputs, times),
+    ...stepWarnings(times),
     ...coreWarnings(inputs, times),
     ...cutWarnings(inputs, times),
   ];
@@ -114,7 +114,7 @@ function stripsWithin(edges: Float64Array, low: number, high: number): number {
   return count;
 }
 
-function stepWarnings(inputs: Case, times: Timing): CaseWarning[] {
+function stepWarnings(times: Timing): CaseWarning[] {
   return times.rotorSpeeds.flatMap((speed, i) => {
     const degrees = (speed * times.dtSeconds * 180) / Math.PI;
     const words = `rotor ${i + 1} turns by ${degrees.toFixed(1)} degrees a step`;
