@@ -70,12 +70,6 @@ function reasonOf(run: CampaignRun, judged: ChannelJudgement | null): string {
   if (run.state === "waiting") return "not begun yet";
   if (run.state === "running") return `not done yet: step ${run.steps} of at most ${run.longestSteps}`;
   // A channel may be fine in a run that is not: then the run's reason is the one that counts.
-  if (
-    run.verdict !== "accepted" &&
-    judged !== null &&
-    judged.verdict !== "accepted" &&
-    run.verdict !== "unstable"
-  )
-    return judged.words;
-  return run.reason ?? "";
+  const own = judged !== null && judged.verdict !== "accepted" && run.verdict !== "failed";
+  return own ? judged.words : (run.reason ?? "");
 }

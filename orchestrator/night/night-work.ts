@@ -22,6 +22,7 @@ const TALLY_MS = 1000;
 const DEADLINE_LOOK_MS = 20_000;
 
 type Trouble = NightSummary["trouble"];
+type QueuedLeg = { readonly ticket: LegTicket; readonly priority: number };
 
 /** One night's work: takes legs from the queue, has them computed, commits them, decides what is next, and ends. */
 export class NightWork {
@@ -62,7 +63,7 @@ export class NightWork {
   async begin(): Promise<void> {
     const { plan, runner, onEvent } = this.#options;
     await this.#queue.clear();
-    await this.#queue.add(this.#ledger.open().map((run) => this.#ticket(run)));
+    await this.#queue.add(this.#ledger.open().map((run) => this.#queued(run, 0)));
     onEvent({
       kind: "begun",
       campaign: plan.campaign,
@@ -142,9 +143,9 @@ export class NightWork {
     this.#inFlight.add(ticket.runId);
     const worker = this.#slots.indexOf(null);
     this.#slots[worker] = ticket.runId;
+    let next: QueuedLeg | null = null;
     try {
-      if (this.#diskIsLow()) return;
-      await this.#leg(ticket, worker);
+      if (!this.#diskIsLow()) next = await this.#leg(ticket, worker);
     } catch (error) {
       this.#meet(error);
     } finally {
@@ -152,14 +153,17 @@ export class NightWork {
       this.#slots[worker] = null;
       this.#options.onEvent({ kind: "idle", worker });
     }
+    // Only now, since another worker may take it at once.
+    if (next !== null && this.#end === null) await this.#queue.add([next]);
     this.#endIfNothingIsLeft();
   }
 
-  async #leg(ticket: LegTicket, worker: number): Promise<void> {
+  /** Has one leg computed and commits it; returns the run's next leg, null for none. */
+  async #leg(ticket: LegTicket, worker: number): Promise<QueuedLeg | null> {
     const { folder, plan, runner, legSeconds } = this.#options;
     const { campaign, runId, attempt, legs } = ticket;
     const claim = await folder.store.claim(campaign, runId, attempt, legs);
-    if (claim === null) return;
+    if (claim === null) return null;
     const order = legOrderOf(claim, { plan, folder: folder.dir, budgetSeconds: legSeconds ?? LEG_SECONDS });
     this.#tellProgress(claim, worker, null);
     const ending = await runner.run(order, {
@@ -168,10 +172,12 @@ export class NightWork {
     });
     this.#ledger.live(runId, null);
     const commit = await this.#commitOf(claim, ending);
-    if (commit !== null) await this.#commit(claim, commit);
-    else if (this.#end === null && !this.#aside.has(runId))
-      // The same ticket again: the leg is repeated from the last checkpoint.
-      await this.#queue.add([{ ...this.#ticket(claim.run), ticket: { ...ticket, tries: ticket.tries + 1 } }]);
+    if (this.#aside.has(runId)) return null;
+    const committed = commit === null ? null : await this.#commit(claim, commit);
+    if (this.#end !== null) return null;
+    // A leg that came to nothing is repeated from the last checkpoint, as the store has it now.
+    const run = committed ?? (await folder.store.campaignRun(campaign, runId));
+    return run.state === "done" ? null : this.#queued(run, committed === null ? ticket.tries + 1 : 0);
   }
 
   /** What to write after a leg; null when nothing of it counts. */
@@ -197,12 +203,13 @@ export class NightWork {
     return commitOfReport(claim, report, plan, now());
   }
 
-  async #commit(claim: LegClaim, commit: LegCommit): Promise<void> {
+  /** Writes a leg and tells what came of it; null when somebody else has claimed the attempt since. */
+  async #commit(claim: LegClaim, commit: LegCommit): Promise<CampaignRun | null> {
     const { folder, onEvent } = this.#options;
     const { history, checkpoint } = commit.computed ?? { history: null, checkpoint: null };
     if ((await folder.store.commit(commit)) === "stale") {
       for (const piece of [history, checkpoint]) this.#remove(piece?.file);
-      return;
+      return null;
     }
     if (checkpoint !== null) this.#remove(claim.checkpoint?.file);
     const run = await folder.store.campaignRun(claim.campaign, claim.run.runId);
@@ -218,18 +225,18 @@ export class NightWork {
         reason: next.reason,
       });
     if (next.kind === "done") onEvent({ kind: "run-done", run });
-    else if (this.#end === null) await this.#queue.add([this.#ticket(run)]);
     this.#tellTally();
+    return run;
   }
 
   #remove(file: string | undefined): void {
     if (file !== undefined) rmSync(join(this.#options.folder.dir, file), { force: true });
   }
 
-  #ticket(run: CampaignRun): { ticket: LegTicket; priority: number } {
+  #queued(run: CampaignRun, tries: number): QueuedLeg {
     const { campaign, runId, attempt, legs } = run;
     return {
-      ticket: { campaign, runId, attempt, legs, tries: 0 },
+      ticket: { campaign, runId, attempt, legs, tries },
       priority: this.#ledger.priority(runId, this.#secondsLeft()),
     };
   }

@@ -1,5 +1,14 @@
 import { randomUUID } from "node:crypto";
-import { linkSync, mkdirSync, readdirSync, readFileSync, renameSync, rmSync, writeFileSync } from "node:fs";
+import {
+  existsSync,
+  linkSync,
+  mkdirSync,
+  readdirSync,
+  readFileSync,
+  renameSync,
+  rmSync,
+  writeFileSync,
+} from "node:fs";
 import { hostname } from "node:os";
 import { join } from "node:path";
 import { z } from "zod";
@@ -11,8 +20,6 @@ const holderSchema = z.object({
   start: z.string().nullable(),
   host: z.string(),
   nonce: z.string(),
-  /** False once the folder was given back. */
-  held: z.boolean(),
 });
 type Holder = z.infer<typeof holderSchema>;
 
@@ -40,14 +47,13 @@ export function lockFolder(dir: string): ReleaseFolder {
     start: processStart(process.pid),
     host: hostname(),
     nonce: randomUUID(),
-    held: true,
   };
   for (let round = 0; round < ROUNDS_MAX; round++) {
     const newest = newestGeneration(lockDir);
-    const holder = newest === 0 ? null : readHolder(lockDir, newest);
+    const holder = readHolder(lockDir, newest);
     if (holder === "gone") continue;
     if (holder !== null && stillHeld(holder)) throw busy(dir, holder);
-    if (takeGeneration(lockDir, newest + 1, me)) return () => giveBack(lockDir, newest + 1, me);
+    if (takeGeneration(lockDir, newest + 1, me)) return () => giveBack(lockDir, newest + 1);
   }
   throw new AppError("DATA_FOLDER_BUSY", `the data folder ${dir} is being taken by many processes at once`, {
     where: dir,
@@ -58,17 +64,17 @@ export function lockFolder(dir: string): ReleaseFolder {
 /** Process that has the folder now; null when nobody has. */
 export function folderHolder(dir: string): { readonly pid: number } | null {
   const lockDir = join(dir, "lock");
-  const newest = newestGeneration(lockDir);
-  const holder = newest === 0 ? null : readHolder(lockDir, newest);
+  const holder = readHolder(lockDir, newestGeneration(lockDir));
   return holder !== null && holder !== "gone" && stillHeld(holder) ? { pid: holder.pid } : null;
 }
 
-const fileName = (generation: number) => `holder-${String(generation).padStart(9, "0")}`;
+const nameOf = (word: "holder" | "free", generation: number): string =>
+  `${word}-${String(generation).padStart(9, "0")}`;
 
 function generations(lockDir: string): number[] {
   try {
     return readdirSync(lockDir).flatMap((name) => {
-      const match = /^holder-(\d{9})$/.exec(name);
+      const match = /^(?:holder|free)-(\d{9})$/.exec(name);
       return match === null ? [] : [Number(match[1])];
     });
   } catch (error) {
@@ -81,11 +87,12 @@ function newestGeneration(lockDir: string): number {
   return Math.max(0, ...generations(lockDir));
 }
 
-/** Who is written in a generation; `gone` when a newer holder has removed it meanwhile. */
+/** Who holds the folder by this generation; null when it is free, `gone` when a newer holder has removed it meanwhile. */
 function readHolder(lockDir: string, generation: number): Holder | "gone" | null {
+  if (generation === 0 || existsSync(join(lockDir, nameOf("free", generation)))) return null;
   let text: string;
   try {
-    text = readFileSync(join(lockDir, fileName(generation)), "utf8");
+    text = readFileSync(join(lockDir, nameOf("holder", generation)), "utf8");
   } catch (error) {
     if ((error as NodeJS.ErrnoException).code === "ENOENT") return "gone";
     throw error;
@@ -99,13 +106,12 @@ function readHolder(lockDir: string, generation: number): Holder | "gone" | null
 }
 
 function stillHeld(holder: Holder): boolean {
-  if (!holder.held) return false;
   // A process of another machine cannot be asked.
   return holder.host !== hostname() || processAlive(holder.pid, holder.start);
 }
 
 function takeGeneration(lockDir: string, generation: number, me: Holder): boolean {
-  const path = join(lockDir, fileName(generation));
+  const path = join(lockDir, nameOf("holder", generation));
   const aside = join(lockDir, `aside-${me.nonce}`);
   writeFileSync(aside, JSON.stringify(me), { mode: 0o600 });
   try {
@@ -117,18 +123,21 @@ function takeGeneration(lockDir: string, generation: number, me: Holder): boolea
     rmSync(aside, { force: true });
   }
   const all = generations(lockDir);
-  if (Math.max(...all) > generation) {
+  // Somebody may have taken this very number and given it back since it was looked at.
+  if (Math.max(...all) > generation || existsSync(join(lockDir, nameOf("free", generation)))) {
     rmSync(path, { force: true });
     return false;
   }
-  for (const old of all) if (old < generation) rmSync(join(lockDir, fileName(old)), { force: true });
+  for (const old of all)
+    if (old < generation)
+      for (const word of ["holder", "free"] as const)
+        rmSync(join(lockDir, nameOf(word, old)), { force: true });
   return true;
 }
 
-function giveBack(lockDir: string, generation: number, me: Holder): void {
-  const aside = join(lockDir, `aside-${me.nonce}`);
-  writeFileSync(aside, JSON.stringify({ ...me, held: false }), { mode: 0o600 });
-  renameSync(aside, join(lockDir, fileName(generation)));
+/** A change of name: it takes no room, so that a full disk cannot keep the folder from being given back. */
+function giveBack(lockDir: string, generation: number): void {
+  renameSync(join(lockDir, nameOf("holder", generation)), join(lockDir, nameOf("free", generation)));
 }
 
 function busy(dir: string, holder: Holder): AppError {

@@ -1,4 +1,4 @@
-import { mkdirSync, readdirSync, rmSync } from "node:fs";
+import { existsSync, mkdirSync, readdirSync, rmSync, writeFileSync } from "node:fs";
 import { join, posix, resolve } from "node:path";
 import { PGlite } from "@electric-sql/pglite";
 import { AppError } from "../contract/index.ts";
@@ -16,6 +16,9 @@ import type { Store } from "./store.ts";
 const ROOM_FOR_A_DATABASE = 96 * 2 ** 20;
 /** Below this much room an existing database is not opened, since its first writes may already fail. */
 const ROOM_TO_OPEN = 24 * 2 ** 20;
+
+/** Its presence says that the database was made to the end. */
+const WHOLE = "database-is-whole";
 
 /** What may be said while a folder is opened, and the clock. */
 export interface OpenOptions {
@@ -38,6 +41,7 @@ export async function openDataFolder(given: string, options: OpenOptions): Promi
     db = await openDatabase(dir, options);
     const pool = new PglitePool(db);
     await migrate(pool, options.now());
+    writeFileSync(join(dir, WHOLE), "");
     const store = createSqlStore(pool);
     await sweep(dir, store);
     return dataFolder(dir, db, pool, store, release);
@@ -63,7 +67,9 @@ function makeFolder(dir: string): void {
 
 async function openDatabase(dir: string, { onNotice }: OpenOptions): Promise<PGlite> {
   const dataDir = join(dir, "database");
-  const isNew = !hasFiles(dataDir);
+  const isNew = !existsSync(join(dir, WHOLE));
+  // Making it was cut short: nothing was ever stored in it.
+  if (isNew) rmSync(dataDir, { recursive: true, force: true });
   if (freeBytes(dir) < (isNew ? ROOM_FOR_A_DATABASE : ROOM_TO_OPEN)) throw diskFull(dir);
   onNotice(
     isNew ? `making the data folder ${dir}; this takes some seconds, once` : `opening the data folder ${dir}`,
@@ -71,14 +77,6 @@ async function openDatabase(dir: string, { onNotice }: OpenOptions): Promise<PGl
   const db = await PGlite.create({ dataDir });
   onNotice("the data folder is open");
   return db;
-}
-
-function hasFiles(dir: string): boolean {
-  try {
-    return readdirSync(dir).length > 0;
-  } catch {
-    return false;
-  }
 }
 
 /** Removes files that no committed leg refers to: they come from legs that died. */

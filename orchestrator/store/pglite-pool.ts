@@ -27,6 +27,8 @@ export class PglitePool extends EventEmitter implements SqlPool {
 
   constructor(db: PGlite) {
     super();
+    // Every queue and worker listens for errors of the pool, and does so as long as the pool lives.
+    this.setMaxListeners(0);
     this.#db = db;
   }
 
