@@ -93,15 +93,17 @@ export class BlockReader {
     reading.size = medianInPlace(scratch, block);
     scratch.set(work);
     reading.middle = medianInPlace(scratch, block);
-    this.removeLine(reading.middle);
+    this.removeLine(work, reading.middle);
     reading.plainScale = robustScale(work, block, scratch);
     this.filter(this.once, this.r);
-    reading.differencedScale = robustScale(this.newest, block, scratch);
+    work.set(this.newest);
+    this.removeLine(work, 0);
+    reading.differencedScale = robustScale(work, block, scratch);
   }
 
   /** Takes the block's median, and the slope between the medians of its halves, out of the samples in `work`. */
-  private removeLine(middle: number): void {
-    const { work, scratch } = this;
+  private removeLine(work: Float64Array, middle: number): void {
+    const { scratch } = this;
     const n = work.length;
     const half = n >> 1;
     for (let i = 0; i < half; i++) scratch[i] = work[i]!;

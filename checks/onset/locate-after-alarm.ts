@@ -2,6 +2,7 @@ import { AppError, type Onset } from "../../orchestrator/contract/index.ts";
 import type { OnsetAlarm } from "./alarm.ts";
 import { isGrowthBeforeEnd, locateGrowth } from "./locate-growth.ts";
 import { locateMeanShift } from "./locate-mean-shift.ts";
+import { locateSpikes } from "./locate-spikes.ts";
 import type { Located } from "./located.ts";
 import { type MonitorLayout, monitorLayout } from "./monitor-layout.ts";
 import { noBaselineWords, onsetWords } from "./onset-words.ts";
@@ -23,8 +24,9 @@ export interface LocateOptions {
   readonly alarms?: readonly OnsetAlarm[];
 }
 
-/** Blocks between skipped start and onset without which there is no baseline. */
+/** Blocks between the skipped start and the onset, and the band before it, without which there is no baseline. */
 const BASELINE_BLOCKS_MIN = 4;
+const BAND_BLOCKS_MIN = 2;
 /** Blocks after the first alarm within which another channel agrees. */
 const AGREE_BLOCKS = 10;
 
@@ -46,9 +48,7 @@ export function locateAfterAlarm(history: RunHistory, alarm: OnsetAlarm, options
   const layout = monitorLayout(options.periodsSteps, options.plannedSteps);
   const agreeing = channelsAgreeing(alarm, options.alarms ?? [], layout);
   const located = locate(x, alarm, layout);
-  if (located === null || located.index < layout.skip + BASELINE_BLOCKS_MIN * layout.block) {
-    return noBaseline(alarm, agreeing);
-  }
+  if (located === null || !hasBaseline(located, layout)) return noBaseline(alarm, agreeing);
   const band = withinHistory(located, x.length);
   const facts = {
     kind: located.kind,
@@ -75,22 +75,28 @@ function locate(x: Float64Array, alarm: OnsetAlarm, layout: MonitorLayout): Loca
     case "non-finite": {
       if (index < layout.skip) return null;
       if (isGrowthBeforeEnd(x, layout, to))
-        return locateGrowth(x, layout, { index: to - 1, to, monotone: false });
+        return locateGrowth(x, layout, { index: to - 1, suspect: to - 10, to, monotone: false });
       return { kind: "non-finite", index, band: [index, index], growthPerStep: null };
     }
     case "spikes":
-      return {
-        kind: "spike-cluster",
-        index: alarm.suspectIndex,
-        band: [alarm.suspectIndex - layout.block, alarm.suspectIndex],
-        growthPerStep: null,
-      };
+      return locateSpikes(x, layout, { suspect: alarm.suspectIndex, to });
     case "mean-shift":
       return locateMeanShift(x, layout, { suspect: alarm.suspectIndex, to });
     default:
       if (!alarm.armed) return null;
-      return locateGrowth(x, layout, { index, to, monotone: alarm.source === "monotone" });
+      return locateGrowth(x, layout, {
+        index,
+        suspect: alarm.suspectIndex,
+        to,
+        monotone: alarm.source === "monotone",
+      });
   }
+}
+
+function hasBaseline(located: Located, { skip, block }: MonitorLayout): boolean {
+  return (
+    located.index >= skip + BASELINE_BLOCKS_MIN * block && located.band[0] >= skip + BAND_BLOCKS_MIN * block
+  );
 }
 
 function channelsAgreeing(alarm: OnsetAlarm, alarms: readonly OnsetAlarm[], layout: MonitorLayout): string[] {

@@ -4,6 +4,7 @@ import { blockLogRms } from "./block-log-rms.ts";
 import { bestChange, meanSquareCost } from "./change-point.ts";
 import { DUST_SHARE } from "./channel-monitor.ts";
 import { fitGrowth, type GrowthFit, onsetBand } from "./growth-fit.ts";
+import { isSpikeCluster, locateSpikes } from "./locate-spikes.ts";
 import type { Located } from "./located.ts";
 import type { MonitorLayout } from "./monitor-layout.ts";
 import { growingScaleLikelihood } from "./scale-likelihood.ts";
@@ -36,7 +37,7 @@ const FAST_RATE = 0.5;
 export function locateGrowth(
   x: Float64Array,
   layout: MonitorLayout,
-  alarm: { index: number; to: number; monotone: boolean },
+  alarm: { index: number; suspect: number; to: number; monotone: boolean },
 ): Located {
   const { block } = layout;
   const from = searchStart(layout, alarm.index);
@@ -44,12 +45,14 @@ export function locateGrowth(
   const span = Math.min(alarm.index + 1, to) - from;
   let baselineEnd = from + Math.round(FIRST_BASELINE * span);
   let residual = baselineResidual(x, layout, { from, baselineEnd, to }, DUST_SHARE);
+  if (isSpikeCluster(residual, alarm.suspect)) return locateSpikes(x, layout, { suspect: alarm.suspect, to });
   let fit = fitBlocks(residual, block);
   for (let pass = 0; pass < 2; pass++) {
     baselineEnd = Math.round(Math.max(from + 4 * block, Math.min(alarm.index, fit.band[0] - block)));
     residual = baselineResidual(x, layout, { from, baselineEnd, to }, DUST_SHARE);
     fit = fitBlocks(residual, block, { near: fit });
   }
+  if (fit.onset > alarm.index) return notPlaced(alarm, from, block);
   const maybeJump = isAbrupt(fit);
   if (maybeJump || fit.rate * block > FAST_RATE) fit = fitFast(residual, fit, block);
   if (maybeJump) {
@@ -57,6 +60,13 @@ export function locateGrowth(
     if (jump.advantage > JUMP_ADVANTAGE) return jump.located;
   }
   return growthFound(residual, fit, alarm.monotone);
+}
+
+/** Where no growth fits before the alarm: somewhere between a few blocks before the monitor's first doubt and the alarm. */
+function notPlaced(alarm: { index: number; suspect: number }, from: number, block: number): Located {
+  const index = Math.min(alarm.suspect, alarm.index);
+  const band = [Math.max(from, index - 5 * block), alarm.index] as const;
+  return { kind: "growing-oscillation", index, band, growthPerStep: null };
 }
 
 /** A growth fit in samples instead of blocks. */

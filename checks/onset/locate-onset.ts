@@ -5,6 +5,8 @@ import { createOnsetMonitor, type OnsetMonitor } from "./onset-monitor.ts";
 
 /** Blocks that are still read after the first alarm, to see which channels agree. */
 const BLOCKS_AFTER = 10;
+/** Width of a mean shift's band from which it is no step. */
+const VAGUE_BLOCKS = 3;
 
 /** What a whole history is judged with. */
 export interface OnsetOptions {
@@ -34,9 +36,14 @@ export function locateOnset(history: RunHistory, options: OnsetOptions): OnsetFi
   const monitor = createOnsetMonitor({ ...options, channels: names });
   readThrough(monitor, columns, history.times.length);
   const alarm = monitor.alarms.find((a) => a.stops) ?? monitor.alarms[0];
-  const onset =
-    alarm === undefined ? null : locateAfterAlarm(history, alarm, { ...options, alarms: monitor.alarms });
-  return { onset, notes: monitor.notes };
+  if (alarm === undefined) return { onset: null, notes: monitor.notes };
+  const onset = locateAfterAlarm(history, alarm, { ...options, alarms: monitor.alarms });
+  return { onset: isVague(onset, monitor.layout.block) ? null : onset, notes: monitor.notes };
+}
+
+/** A shift of the mean that cannot be placed is slow noise, and stays a note. */
+function isVague({ kind, band }: Onset, block: number): boolean {
+  return kind === "mean-shift" && band !== null && band[1] - band[0] > VAGUE_BLOCKS * block;
 }
 
 /** Pushes every sample until some blocks after the first alarm that stops the run. */
