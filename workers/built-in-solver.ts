@@ -3,7 +3,6 @@ import { AppError } from "../orchestrator/contract/index.ts";
 import { loadKernel } from "./load-kernel.ts";
 import { createSimulation, restoreSimulation } from "./model/index.ts";
 import type { PairKernel } from "./model/kernel/index.ts";
-import { typescriptKernel } from "./model/kernel/index.ts";
 import type { CaseInputs, Solver } from "./solver.ts";
 
 /** Bytes of the kernel's name in front of the model's own state. */
@@ -52,7 +51,7 @@ function checkedCase(inputs: CaseInputs) {
   if (checked.success) return checked.data;
   const [first] = checked.error.issues;
   throw new AppError("CASE_INVALID", `the case cannot be computed: ${first?.message}`, {
-    where: first?.path.join("."),
+    where: first?.path.join(".") ?? "case",
     fix: "Plan the campaign again with this version of midwatch.",
     cause: checked.error,
   });

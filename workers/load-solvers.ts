@@ -1,4 +1,4 @@
-import { BUILT_IN, builtInSolver, builtInSolver } from "./built-in-solver.ts";
+import { builtInSolver } from "./built-in-solver.ts";
 import type { Solver, SolverTable } from "./solver.ts";
 
 /**
