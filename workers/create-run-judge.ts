@@ -37,7 +37,10 @@ const STRIP = /^strips?\b|\bstrips?[.\d]/;
  * The judge of one attempt: onset monitors over the watched channels, looks at the demanded ones at the lengths of the
  * checks' own ladder, and a final judgement of every load.
  *
- * @throws CASE_INVALID for a channel that the solver does not record
+ * Runs of one campaign differ in what they record (a wing without rotors has no thrust): what a run does not have is not
+ * demanded of it.
+ *
+ * @throws CASE_INVALID where a run records nothing of what is demanded or watched
  */
 export function createRunJudge(options: RunJudgeOptions): RunJudge {
   return new AttemptJudge(options);
@@ -46,7 +49,7 @@ export function createRunJudge(options: RunJudgeOptions): RunJudge {
 class AttemptJudge implements RunJudge {
   readonly nextLook = nextLookLength;
   readonly #options: RunJudgeOptions;
-  readonly #columnOf: (name: string) => number;
+  readonly #columns: ReadonlyMap<string, number>;
   readonly #watched: readonly string[];
   readonly #watchedColumns: readonly number[];
   readonly #demanded: ReadonlyMap<string, Tolerance>;
@@ -59,12 +62,16 @@ class AttemptJudge implements RunJudge {
     const { channels, accept, onset, longestSteps } = options;
     const names = channels.map((channel) => channel.name);
     this.#options = options;
-    this.#columnOf = columnFinder(names);
-    this.#watched = onset.channels === "all" ? names.filter((name) => !STRIP.test(name)) : onset.channels;
-    this.#watchedColumns = this.#watched.map(this.#columnOf);
+    this.#columns = new Map(names.map((name, column) => [name, column]));
+    const watched = onset.channels === "all" ? names.filter((name) => !STRIP.test(name)) : onset.channels;
+    this.#watched = watched.filter((name) => this.#columns.has(name));
+    this.#watchedColumns = this.#watched.map((name) => this.#columnOf(name));
     this.#sample = new Float64Array(this.#watched.length);
-    this.#demanded = new Map(accept.channels.map(({ name, tolerance }) => [name, tolerance]));
-    for (const name of this.#demanded.keys()) this.#columnOf(name);
+    const demanded = accept.channels.filter(({ name }) => this.#columns.has(name));
+    this.#demanded = new Map(demanded.map(({ name, tolerance }) => [name, tolerance]));
+    const wanted = accept.channels.map(({ name }) => name);
+    if (demanded.length === 0) throw nothingRecorded("accept", wanted, names);
+    if (this.#watched.length === 0) throw nothingRecorded("onset", watched, names);
     this.#periodsSteps = options.periods.map((period) => period.steps);
     this.#monitor = createOnsetMonitor({
       channels: this.#watched,
@@ -139,6 +146,12 @@ class AttemptJudge implements RunJudge {
     };
   }
 
+  #columnOf(name: string): number {
+    const column = this.#columns.get(name);
+    if (column === undefined) throw new Error(`there is no channel ${name}`);
+    return column;
+  }
+
   #judge(samples: HistorySamples, onset: Onset | null, name: string): ChannelJudgement {
     const { dtSeconds, accept, shortestSteps } = this.#options;
     return judgeBesideOnset(samples.columns[this.#columnOf(name)]!, onset, {
@@ -152,16 +165,15 @@ class AttemptJudge implements RunJudge {
   }
 }
 
-function columnFinder(names: readonly string[]): (name: string) => number {
-  const columns = new Map(names.map((name, column) => [name, column]));
-  return (name) => {
-    const column = columns.get(name);
-    if (column !== undefined) return column;
-    throw new AppError("CASE_INVALID", `the solver records no channel "${name}"`, {
-      where: "accept or onset",
-      fix: `It records: ${names.filter((known) => !STRIP.test(known)).join(", ")}.`,
-    });
-  };
+function nothingRecorded(
+  block: "accept" | "onset",
+  wanted: readonly string[],
+  recorded: readonly string[],
+): AppError {
+  return new AppError("CASE_INVALID", `this run records none of: ${wanted.join(", ")}`, {
+    where: `${block}.channels`,
+    fix: `It records: ${recorded.filter((name) => !STRIP.test(name)).join(", ")}.`,
+  });
 }
 
 /** The record with the sample that the solver could not give. */

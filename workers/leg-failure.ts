@@ -3,6 +3,9 @@ import { AppError, type LegOrder, type LegOutcome, type LegReport } from "../orc
 /** Lines of a stack that go into the store. */
 const STACK_LINES = 8;
 
+/** Troubles that say nothing about the run: once they are mended, it goes on. */
+const SET_ASIDE: ReadonlySet<string> = new Set(["HISTORY_DAMAGED", "CHECKPOINT_DAMAGED", "UNAVAILABLE"]);
+
 /** A report of a leg that came to nothing: its files, if any, are gone, and nothing of it counts. */
 export function legFailure(order: LegOrder, error: unknown): LegReport {
   const { outcome, code } = classified(error);
@@ -32,7 +35,7 @@ export function legFailure(order: LegOrder, error: unknown): LegReport {
 function classified(error: unknown): { outcome: LegOutcome; code: string } {
   const code = error instanceof Error && "code" in error ? String(error.code) : "";
   if (code === "ENOSPC" || code === "EDQUOT") return { outcome: "disk-full", code: "DISK_FULL" };
-  if (code === "HISTORY_DAMAGED" || code === "CHECKPOINT_DAMAGED") return { outcome: "damaged", code };
+  if (SET_ASIDE.has(code)) return { outcome: "damaged", code };
   return { outcome: "failed", code: error instanceof AppError ? error.code : "ATTEMPT_FAILED" };
 }
 

@@ -19,7 +19,7 @@ export const LEG_OUTCOMES = [
   "failed",
   /** The disk is full; nothing of this leg counts. */
   "disk-full",
-  /** Files of the attempt so far cannot be read; nothing of this leg counts. */
+  /** Files of the attempt so far cannot be read, or what it was begun with is not here; nothing of this leg counts. */
   "damaged",
 ] as const;
 

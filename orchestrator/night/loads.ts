@@ -14,10 +14,17 @@ export function campaignLoads(state: CampaignState): LoadRow[] {
     if (of !== undefined) companions.set(of, [...(companions.get(of) ?? []), run]);
   }
   return state.list.flatMap((run) =>
-    state.plan.accept.channels.map(({ name }) =>
+    demandedOf(run, state).map((name) =>
       loadRow(run, name, state.plan.accept.confidence, companions.get(run.runId) ?? []),
     ),
   );
+}
+
+/** Demanded channels that the run has; before its first leg nobody knows, and all are listed. */
+function demandedOf(run: CampaignRun, { plan }: CampaignState): string[] {
+  const names = plan.accept.channels.map((channel) => channel.name);
+  if (run.channels.length === 0) return names;
+  return names.filter((name) => run.channels.some((channel) => channel.name === name));
 }
 
 function loadRow(
