@@ -1,6 +1,7 @@
 import type { OnsetKind } from "../../orchestrator/contract/index.ts";
 import type { AlarmSource, ChannelBound, OnsetAlarm } from "./alarm.ts";
 import { BlockReader, type BlockReading } from "./block-reader.ts";
+import { DUST_SHARE } from "./dust.ts";
 import { ExpandingReference } from "./expanding-reference.ts";
 import { Guard } from "./guard.ts";
 import { MeanShift } from "./mean-shift.ts";
@@ -10,8 +11,6 @@ import { ScaleBand } from "./scale-band.ts";
 import { SpikeCluster } from "./spike-cluster.ts";
 import { SPIKE_LIMIT } from "./spike-flags.ts";
 
-/** Noise below this share of the level is numerical dust: growth is measured against it. */
-export const DUST_SHARE = 1e-4;
 /** Growth must reach this share of the level before it matters to an average. */
 const MATTERS_SHARE = 1e-3;
 

@@ -1,6 +1,7 @@
 import { AppError, type Onset } from "../../orchestrator/contract/index.ts";
 import type { OnsetAlarm } from "./alarm.ts";
-import { isGrowthBeforeEnd, locateGrowth } from "./locate-growth.ts";
+import { isGrowthBeforeEnd } from "./growth-end.ts";
+import { locateGrowth } from "./locate-growth.ts";
 import { locateMeanShift } from "./locate-mean-shift.ts";
 import { locateSpikes } from "./locate-spikes.ts";
 import type { Located } from "./located.ts";

@@ -1,6 +1,6 @@
 import { baselineResidual } from "./baseline-residual.ts";
 import { bestChange, meanCost } from "./change-point.ts";
-import { DUST_SHARE } from "./channel-monitor.ts";
+import { DUST_SHARE } from "./dust.ts";
 import type { Located } from "./located.ts";
 import { medianInPlace } from "./median-in-place.ts";
 import type { MonitorLayout } from "./monitor-layout.ts";

@@ -1,5 +1,5 @@
 import { type BaselineResidual, baselineResidual } from "./baseline-residual.ts";
-import { DUST_SHARE } from "./channel-monitor.ts";
+import { DUST_SHARE } from "./dust.ts";
 import type { Located } from "./located.ts";
 import type { MonitorLayout } from "./monitor-layout.ts";
 import { robustScale } from "./robust-scale.ts";

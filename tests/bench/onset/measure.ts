@@ -9,6 +9,8 @@ export interface FamilyOutcome {
   readonly runs: number;
   /** Share with an onset named (`no-stable-baseline` is none), after the true onset for troubled ones. */
   readonly named: number;
+  /** Share with any finding, `no-stable-baseline` included: what would stop a run or mark it. */
+  readonly flagged: number;
   /** Named before the true onset's alarm could be right, for troubled families. */
   readonly early: number;
   readonly rightClass: number;
@@ -66,6 +68,7 @@ function summarise(
     family,
     runs: found.length,
     named: hits.length / found.length,
+    flagged: found.filter((f) => f.onset !== null).length / found.length,
     early: found.filter(early).length / found.length,
     rightClass: share(({ truth, onset }) => truth.accepted.includes(onset.kind)),
     delayMedian: middle(each.map(({ truth, onset }) => onset.alarmIndex - truth.onset)),
