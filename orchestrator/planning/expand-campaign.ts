@@ -10,12 +10,14 @@ import { changesProblems, namesProblems, VARIANT_AXIS } from "./check-names.ts";
 import { remedyProblems } from "./check-remedies.ts";
 import { refuseRunsByMistake } from "./count-runs.ts";
 import { AS_GIVEN } from "./draft-sweep.ts";
+import { parseFieldPath } from "./field-path.ts";
 import { orderOfNight } from "./order-of-night.ts";
 import type { Campaign } from "./parse-campaign.ts";
 import { readDeadline, wallSeconds } from "./predict-cost.ts";
-import { type Problem, problemsError } from "./problem.ts";
+import { type Problem, problemsError, type TextPlace } from "./problem.ts";
 import { campaignSlug, channelProblems, readAccept, readOnset, readTolerance } from "./read-rules.ts";
 import { type BookedRun, labelOf } from "./run-book.ts";
+import { originOf } from "./run-draft.ts";
 import { runLengths } from "./run-lengths.ts";
 
 /** What planning has to be told about the solver and the machine. */
@@ -86,17 +88,28 @@ function rules(campaign: Campaign) {
   };
 }
 
+/** What the solver says of a run; a refusal is placed at the field that it names. */
 function describeRun(campaign: Campaign, run: BookedRun, describe: DescribeCase): CaseDescription {
   try {
     return describe(run.inputs);
   } catch (error) {
     if (!(error instanceof AppError)) throw error;
-    const { line, column } = campaign.placeOf(run.draft.trail.at(-1)?.at ?? ["case"]);
-    throw new AppError("CAMPAIGN_INVALID", `${labelOf(run)}: ${error.message}`, {
-      where: `${campaign.fileName}:${line}:${column}${error.where === undefined ? "" : `, ${error.where}`}`,
-      ...(error.fix !== undefined && { fix: error.fix }),
-      cause: error,
-    });
+    const [field = ""] = (error.where ?? "").split(" ");
+    const problem = {
+      place: refusalPlace(campaign, run, field),
+      field: field === "" ? "case" : `case.${field}`,
+      words: `${error.message} (in ${labelOf(run)})`,
+    };
+    throw problemsError("CAMPAIGN_INVALID", campaign.fileName, [problem], error.fix);
+  }
+}
+
+function refusalPlace(campaign: Campaign, run: BookedRun, field: string): TextPlace {
+  try {
+    return campaign.placeOf(originOf(run.draft, parseFieldPath(field) as (string | number)[]));
+  } catch {
+    // The solver named no field: the run's last change is the nearest that there is.
+    return campaign.placeOf(run.draft.trail.at(-1)?.at ?? ["case"]);
   }
 }
 

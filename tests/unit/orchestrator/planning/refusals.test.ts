@@ -280,11 +280,16 @@ describe("a campaign that cannot be planned is refused with place, field and wha
 
   it("names the run whose inputs the solver refuses", () => {
     const describe: typeof plainDescription = (inputs) => {
-      if ((inputs.wing as { span_m: number }).span_m > 2.5) throw new AppError("CASE_INVALID", "too wide");
+      if ((inputs.wing as { span_m: number }).span_m > 2.5)
+        throw new AppError("CASE_INVALID", "too wide", {
+          where: "wing.span_m (rotors.1)",
+          fix: "Take less.",
+        });
       return plainDescription(inputs);
     };
     const error = refusalOf(axes("  - { field: wing.span_m, values: [2, 3] }"), { describe });
-    expect(error.message).toBe("span 3 m: too wide");
+    expect(error.message).toBe("case.wing.span_m: too wide (in span 3 m)");
+    expect(error.fix).toBe("Take less.");
     expect(error.where).toBe("small.yaml:10:39");
   });
 });
