@@ -4,13 +4,17 @@ import type { Command } from "commander";
 import type { CommandIo } from "../cli-io.ts";
 import { historyCommand } from "./history.ts";
 import { loadsCommand } from "./loads.ts";
+import { planCommand } from "./plan.ts";
+import { schemaCommand } from "./schema.ts";
 import { stopCommand } from "./stop.ts";
 import { tellCommand } from "./tell.ts";
 
 /** Every command, in the order of the help. */
 export const commands: readonly ((io: CommandIo) => Command)[] = [
+  planCommand,
   tellCommand,
   loadsCommand,
   historyCommand,
   stopCommand,
+  schemaCommand,
 ];
