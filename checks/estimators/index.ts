@@ -9,6 +9,7 @@ export { findPeriod } from "./find-period.ts";
 export { firstNonFinite } from "./finite-series.ts";
 export { incompleteBeta } from "./incomplete-beta.ts";
 export { KPSS_LEVEL_1_PERCENT, KPSS_LEVEL_5_PERCENT, kpss } from "./kpss.ts";
+export { type LeastSquares, leastSquares } from "./least-squares.ts";
 export { type Line, linearRegression } from "./linear-regression.ts";
 export { longRunVarianceAutoregressive } from "./long-run-variance-autoregressive.ts";
 export { andrewsBandwidth, longRunVarianceBartlett } from "./long-run-variance-bartlett.ts";

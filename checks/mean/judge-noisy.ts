@@ -14,11 +14,9 @@ import {
   provenHarmless,
   type Rise,
   riseOver,
-  tailTest,
   trendTest,
   varianceTest,
 } from "./stationarity.ts";
-import { type GuardedInterval, tailGuard } from "./tail-guard.ts";
 
 const EFFECTIVE_SAMPLES_MIN = 40;
 /** A movement is called drift, rather than too little data, only when it is this unlikely to be chance. */
@@ -31,7 +29,6 @@ interface Measured {
   readonly fromIndex: number;
   readonly kept: Float64Array;
   readonly interval: MeanInterval;
-  readonly guarded: GuardedInterval | null;
   readonly value: number;
   readonly halfWidth: number;
   readonly tolerance: number;
@@ -84,11 +81,12 @@ function measure(x: Float64Array, reduced: ReducedSeries, options: FullJudgeOpti
   const start = Math.min(startUpEnd(blocks), blocks.length - CYCLES_MIN);
   const kept = blocks.subarray(start);
   const fromIndex = Math.ceil(first + start * blockLength);
-  const interval = meanInterval(kept, options.confidence);
-  const guarded = options.fromDeveloped
-    ? null
-    : tailGuard(interval, inverseTimes(interval, x.length, blockLength), options.confidence);
-  const value = guarded?.value ?? interval.mean;
+  const interval = meanInterval(
+    blocks,
+    start,
+    options.fromDeveloped ? null : inverseTimes(reduced),
+    options.confidence,
+  );
   const spread = reduced.period === null ? variance(x.subarray(fromIndex)) : variance(kept);
   const count = reduced.period === null ? x.length - fromIndex : kept.length;
   return {
@@ -97,24 +95,20 @@ function measure(x: Float64Array, reduced: ReducedSeries, options: FullJudgeOpti
     fromIndex,
     kept,
     interval,
-    guarded,
-    value,
-    halfWidth: guarded?.halfWidth ?? interval.halfWidth,
-    tolerance: absoluteTolerance(options.tolerance, value),
+    value: interval.value,
+    halfWidth: interval.halfWidth,
+    tolerance: absoluteTolerance(options.tolerance, interval.value),
     effective: interval.se > 0 ? Math.min(count, spread / interval.se ** 2) : count,
-    rise: riseOver(interval),
+    rise: riseOver(kept),
   };
 }
 
-/** Average of 1/t over each batch, t in samples from the impulsive start, the first sample at t = 1. */
-function inverseTimes(interval: MeanInterval, n: number, blockLength: number): Float64Array {
-  const count = interval.batches.length;
-  const length = Math.floor(interval.blocks / count) * blockLength;
-  const begin = n - count * length;
-  return Float64Array.from(interval.batches, (_, j) => {
-    const from = Math.max(0, begin + j * length) + 1;
-    return Math.log1p(length / from) / length;
-  });
+/** Average of 1/t over each block, t in samples from the impulsive start, the first sample at t = 1. */
+function inverseTimes({ blocks, blockLength, first }: ReducedSeries): Float64Array {
+  return Float64Array.from(
+    blocks,
+    (_, j) => Math.log1p(blockLength / (first + j * blockLength + 1)) / blockLength,
+  );
 }
 
 function enoughTests(m: Measured, reduced: ReducedSeries): TestResult[] {
@@ -155,8 +149,7 @@ function enoughTests(m: Measured, reduced: ReducedSeries): TestResult[] {
 function stillnessTests(m: Measured): TestResult[] {
   const bound = boundTest(m.rise, m.tolerance, m.value);
   if (provenHarmless(m.rise, m.halfWidth, m.tolerance)) return [bound];
-  const tail = m.guarded === null ? [] : [tailTest(m.guarded, m.interval.batches.length)];
-  return [bound, trendTest(m.rise, m.value), ...tail, levelTest(m.kept)];
+  return [bound, trendTest(m.rise, m.value), levelTest(m.kept)];
 }
 
 function verdictOf(m: Measured, enough: readonly TestResult[], still: readonly TestResult[]): Verdict {

@@ -16,7 +16,7 @@ const ROUNDING = 1e-12;
  * One look at the average of one stretch: start-up, stationarity, mean and half-width.
  *
  * A NaN or an infinity fails; fewer than 200 samples need longer; a constant has half-width 0; a noise-free record is
- * bounded; everything else is left to statistics. One look alone accepts too much: `judgeRecord` takes two.
+ * bounded; everything else is left to statistics.
  *
  * @param x shape [n], n >= 0
  * @param options complete

@@ -2,6 +2,7 @@ import type { TestResult } from "../../orchestrator/contract/index.ts";
 import {
   andrewsBandwidth,
   autocorrelation,
+  batchMeans,
   KPSS_LEVEL_5_PERCENT,
   kpss,
   linearRegression,
@@ -11,16 +12,15 @@ import {
   welchTest,
 } from "../estimators/index.ts";
 import { amountInWords, numberInWords } from "./amount-in-words.ts";
-import type { MeanInterval } from "./mean-interval.ts";
-import type { GuardedInterval } from "./tail-guard.ts";
+import { longRunVarianceOf, noiseOf } from "./noise.ts";
 
 const P_MIN = 0.05;
 const VARIANCE_P_MIN = 0.01;
 /** Rises of up to this many tolerances, half of them at either end of the window, pass the bound. */
 const BOUND_TOLERANCES = 3;
-const HARMLESS_TOLERANCES = 2;
+const HARMLESS_TOLERANCES = 1.5;
 
-/** Movement of the mean over a window, as a straight line through the batch means. */
+/** Movement of the mean over a window, as a straight line. */
 export interface Rise {
   /** Last end less first end of the line, unit of the channel. */
   readonly rise: number;
@@ -31,26 +31,30 @@ export interface Rise {
   readonly hidden: number;
 }
 
+const LINE_MEANS = 32;
+
 /**
  * Straight-line movement of the mean over a window.
  *
- *   batch means on batch number by least squares, errors widened by the interval's inflation
+ *   least squares on 32 batch means; standard error √12 times that of the mean, from an autoregression fitted to what the
+ *   line leaves, so that the movement does not hide behind the noise that it makes
  *
  * Limits: a movement that comes back within the window is seen by the level statistic, not here.
  *
- * @param interval its batches, at least 3
+ * @param kept shape [m], the window's blocks, m >= 8
  * @returns unit of the channel
  */
-export function riseOver(interval: MeanInterval): Rise {
-  const { batches } = interval;
-  const count = batches.length;
+export function riseOver(kept: Float64Array): Rise {
+  const means = batchMeans(kept, Math.min(LINE_MEANS, kept.length));
   const line = linearRegression(
-    Float64Array.from(batches, (_, j) => j),
-    batches,
+    Float64Array.from(means, (_, j) => j),
+    means,
   );
-  const df = count - 2;
-  const rise = line.slope * count;
-  const se = line.slopeSe * count * Math.sqrt(interval.inflation);
+  const df = means.length - 2;
+  const rise = line.slope * means.length;
+  const perBlock = rise / kept.length;
+  const rest = kept.map((value, i) => value - perBlock * i);
+  const se = Math.sqrt((12 * longRunVarianceOf(noiseOf(rest))) / kept.length);
   const p = rise === 0 ? 1 : 2 * studentTCdf(-Math.abs(rise) / se, df);
   return { rise, se, df, p, hidden: Math.abs(rise) + studentTQuantile(0.95, df) * se };
 }
@@ -88,21 +92,6 @@ export function trendTest(rise: Rise, mean: number): TestResult {
     words: passed
       ? "no straight trend stands out of the noise"
       : `the mean ${way} by ${amountInWords(rise.rise, mean)} over the window, more than chance explains (p = ${numberInWords(rise.p)})`,
-  };
-}
-
-/** Whether a tail that decays like 1/t stands out of the noise. */
-export function tailTest(guarded: GuardedInterval, batches: number): TestResult {
-  const passed = guarded.p >= P_MIN;
-  return {
-    name: "start-up-tail",
-    statistic: Math.abs(guarded.t),
-    limit: studentTQuantile(1 - P_MIN / 2, batches - 2),
-    p: guarded.p,
-    passed,
-    words: passed
-      ? "no tail of the start-up stands out of the noise"
-      : `the start-up has left a slowly decaying tail in the window (p = ${numberInWords(guarded.p)})`,
   };
 }
 

@@ -3,7 +3,7 @@
 import { writeFileSync } from "node:fs";
 import { parseArgs } from "node:util";
 import { judgeRecord, nextLookLength } from "../../checks/index.ts";
-import { SCENARIOS } from "./stationarity/families/index.ts";
+import { FINISHED_SCENARIOS, SCENARIOS } from "./stationarity/families/index.ts";
 import { markdownTable } from "./stationarity/markdown-table.ts";
 import { type Characteristics, fixedLength, type RuleUnderTest, sequential } from "./stationarity/measure.ts";
 
@@ -21,6 +21,7 @@ const seed = Number(values.seed);
 const replications = Number(values.replications ?? (values.quick ? 40 : 400));
 const rule: RuleUnderTest = { judge: judgeRecord, nextLook: nextLookLength };
 const chosen = SCENARIOS.filter((s) => s.name.includes(values.only));
+const finished = FINISHED_SCENARIOS.filter((s) => s.name.includes(values.only));
 /** Length of the fixed-length records in oracle lengths: the tolerance is then 2.2 ideal half-widths. */
 const FIXED = 2.2 ** 2;
 
@@ -28,6 +29,10 @@ const rows: Characteristics[] = [];
 for (const scenario of chosen) {
   rows.push(sequential(scenario, rule, replications, seed));
   rows.push(fixedLength(scenario, rule, replications, seed + 1, FIXED));
+  console.error(`${scenario.name}: done`);
+}
+for (const scenario of finished) {
+  rows.push(fixedLength(scenario, rule, replications, seed + 2, scenario.longest));
   console.error(`${scenario.name}: done`);
 }
 const tables = (["sequential", "fixed length"] as const).map(

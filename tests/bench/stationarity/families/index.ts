@@ -1,13 +1,16 @@
 // Scenario families of the operating characteristics of the mean: how histories are made, with everything about them
 // known. Nothing here is seen by the judge but samples, tolerance and declared periods. Start with ../scenario.ts.
 import type { Scenario } from "../scenario.ts";
-import { movingMeans, steps } from "./moving.ts";
+import { longRecords, movingMeans } from "./moving.ts";
 import { noiseFree } from "./noise-free.ts";
 import { periodic } from "./periodic.ts";
 import { startUp, unfinished } from "./start-up.ts";
 import { stationary } from "./stationary.ts";
 
-/** Every scenario, in the order of the tables. */
+/** Scenarios for finished records only: their movement is tied to the record's length. */
+export const FINISHED_SCENARIOS: readonly Scenario[] = longRecords;
+
+/** Every scenario of running records, in the order of the tables. */
 export const SCENARIOS: readonly Scenario[] = [
   ...stationary,
   ...periodic,
@@ -15,5 +18,4 @@ export const SCENARIOS: readonly Scenario[] = [
   ...startUp,
   ...unfinished,
   ...movingMeans,
-  ...steps,
 ];

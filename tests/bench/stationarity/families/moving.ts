@@ -25,7 +25,16 @@ export const movingMeans: readonly Scenario[] = [
   moving("drift of 8 tolerances", "drift 8", (t) => 8 * tolerance * t),
 ];
 
-/** A step in the mean, late in a record of three oracle lengths. */
-export const steps: readonly Scenario[] = [
-  { ...moving("step of 4 tolerances", "step", (t) => (t < 2.1 ? 0 : 4 * tolerance)), longest: 3 },
+/** Oracle's tolerance is a third of what these records may use, so that nothing but the movement stands in the way. */
+function inRecord(name: string, path: (share: number) => number): Scenario {
+  const length = 9 * ORACLE;
+  return { ...moving(name, "movement in a long record", (t) => path((t * ORACLE) / length)), longest: 9 };
+}
+
+/** Finished records of nine oracle lengths (tolerance three ideal half-widths), moving by so much over the record. */
+export const longRecords: readonly Scenario[] = [
+  inRecord("record drifts by 2 tolerances", (s) => 2 * tolerance * s),
+  inRecord("record drifts by 4 tolerances", (s) => 4 * tolerance * s),
+  inRecord("record steps by 3 tolerances", (s) => (s < 0.7 ? 0 : 3 * tolerance)),
+  inRecord("record relaxes with 0.3 of its length", (s) => -100 * tolerance * Math.exp(-s / 0.3)),
 ];
