@@ -2,7 +2,7 @@
 //   node --import tsx tests/bench/onset-characteristics.ts [--quick] [--seed N] [--only TEXT] [--runs N] [--json FILE] [--markdown FILE]
 import { writeFileSync } from "node:fs";
 import { parseArgs } from "node:util";
-import { type FamilyOutcome, measureFamily } from "./onset/measure.ts";
+import { type FamilyOutcome, findAfterwards, findLive, measureFamily } from "./onset/measure.ts";
 import { LOOK_ALIKES, stableRun, TOO_EARLY } from "./onset/sound.ts";
 import { measureSpeed } from "./onset/speed.ts";
 import { onsetTables } from "./onset/tables.ts";
@@ -23,11 +23,11 @@ const seed = Number(values.seed);
 const perFamily = Number(values.runs ?? (values.quick ? 40 : 300));
 const stable = Number(values.runs ?? (values.quick ? 200 : 3000));
 
-const measureAll = (families: typeof TROUBLE, runs: number): FamilyOutcome[] =>
+const measureAll = (families: typeof TROUBLE, runs: number, find = findAfterwards): FamilyOutcome[] =>
   Object.entries(families)
     .filter(([name]) => name.includes(values.only))
     .map(([name, make]) => {
-      const outcome = measureFamily(name, make, runs, seed, (run, { truth, periodsSteps }, onset) => {
+      const outcome = measureFamily(name, make, runs, seed, find, (run, { truth, periodsSteps }, onset) => {
         if (!values.verbose) return;
         const where = onset && `${onset.kind} at ${onset.index} [${onset.band}], alarm ${onset.alarmIndex}`;
         console.error(`${name} ${run}: true ${truth?.onset} ${truth?.rate} (${periodsSteps}); ${where}`);
@@ -39,6 +39,7 @@ const measureAll = (families: typeof TROUBLE, runs: number): FamilyOutcome[] =>
 const results = {
   seed,
   trouble: measureAll(TROUBLE, perFamily),
+  live: measureAll(TROUBLE, perFamily, findLive),
   lookAlikes: measureAll(LOOK_ALIKES, perFamily),
   tooEarly: measureAll(TOO_EARLY, perFamily),
   stable: measureAll({ "stable, 5000 steps": stableRun }, stable),

@@ -1,4 +1,4 @@
-import { locateOnset } from "../../../checks/onset/index.ts";
+import { createOnsetMonitor, locateAfterAlarm, locateOnset } from "../../../checks/onset/index.ts";
 import type { Onset } from "../../../orchestrator/contract/index.ts";
 import { Draw } from "./draw.ts";
 import type { OnsetScenario } from "./scenario.ts";
@@ -34,18 +34,47 @@ export function measureFamily(
   make: (draw: Draw) => OnsetScenario,
   runs: number,
   seed: number,
+  find: (scenario: OnsetScenario) => Onset | null,
   report?: (run: number, scenario: OnsetScenario, onset: Onset | null) => void,
 ): FamilyOutcome {
   const found: { scenario: OnsetScenario; onset: Onset | null }[] = [];
   for (let run = 0; run < runs; run++) {
     const scenario = make(new Draw(seed * 100_003 + run * 7_919 + hash(family)));
-    const [first] = Object.values(scenario.channels);
-    const times = Float64Array.from(first!, (_, t) => t);
-    const { onset } = locateOnset({ times, channels: scenario.channels }, scenario);
+    const onset = find(scenario);
     report?.(run, scenario, onset);
     found.push({ scenario: { ...scenario, channels: {} }, onset });
   }
   return summarise(family, found);
+}
+
+/** Judges the whole history. */
+export function findAfterwards(scenario: OnsetScenario): Onset | null {
+  return locateOnset(historyOf(scenario), scenario).onset;
+}
+
+/** Judges what is known at the first alarm, as a running leg does. */
+export function findLive(scenario: OnsetScenario): Onset | null {
+  const names = Object.keys(scenario.channels);
+  const { periodsSteps, plannedSteps } = scenario;
+  const monitor = createOnsetMonitor({ channels: names, periodsSteps, plannedSteps });
+  const history = historyOf(scenario);
+  const columns = Object.values(scenario.channels);
+  for (let t = 0; t < history.times.length; t++) {
+    monitor.push(columns.map((x) => x[t]!));
+    const alarm = monitor.alarms[0];
+    if (alarm === undefined) continue;
+    const soFar = {
+      times: history.times.slice(0, t + 1),
+      channels: Object.fromEntries(names.map((name, i) => [name, columns[i]!.slice(0, t + 1)])),
+    };
+    return locateAfterAlarm(soFar, alarm, { ...scenario, alarms: monitor.alarms });
+  }
+  return null;
+}
+
+function historyOf({ channels }: OnsetScenario) {
+  const [first] = Object.values(channels);
+  return { times: Float64Array.from(first!, (_, t) => t), channels };
 }
 
 function summarise(

@@ -4,6 +4,8 @@ import type { FamilyOutcome } from "./measure.ts";
 export interface OnsetResults {
   readonly seed: number;
   readonly trouble: readonly FamilyOutcome[];
+  /** The same troubled histories, judged from what is known at the alarm. */
+  readonly live: readonly FamilyOutcome[];
   readonly lookAlikes: readonly FamilyOutcome[];
   readonly tooEarly: readonly FamilyOutcome[];
   readonly stable: readonly FamilyOutcome[];
@@ -15,33 +17,40 @@ export function onsetTables(results: OnsetResults): string {
   const quiet = [...results.lookAlikes, ...results.stable, ...results.tooEarly];
   const speed = Object.entries(results.microsecondsPerSample).map(([name, us]) => [name, us.toFixed(2)]);
   return [
-    "### Trouble",
-    table(
-      [
-        "family",
-        "runs",
-        "found",
-        "too early",
-        "right class",
-        "delay",
-        "error",
-        "error, e-folds",
-        "in band",
-        "trusted ends before",
-        "rate found/true",
-      ],
-      results.trouble.map(troubleRow),
-    ),
+    "### Trouble, judged from the whole history",
+    table(TROUBLE_HEAD, results.trouble.map(troubleRow)),
+    "### Trouble, judged when the alarm comes",
+    table(TROUBLE_HEAD, results.live.map(troubleRow)),
     "### Sound, and troubled without a baseline",
     table(
-      ["family", "runs", "onset named", "kinds"],
-      quiet.map((f) => [f.family, String(f.runs), share(f.named, f.runs), kindWords(f.kinds)]),
+      ["family", "runs", "onset named", "anything said", "kinds"],
+      quiet.map((f) => [
+        f.family,
+        String(f.runs),
+        share(f.named, f.runs),
+        share(f.flagged, f.runs),
+        kindWords(f.kinds),
+      ]),
     ),
     "### Cost of the running monitors",
     table(["", "µs a sample and channel"], speed),
     `Seed ${results.seed}; standard errors in brackets; medians of delay and error in steps.\n`,
   ].join("\n\n");
 }
+
+const TROUBLE_HEAD = [
+  "family",
+  "runs",
+  "found",
+  "before the onset",
+  "right class",
+  "delay",
+  "error",
+  "error, e-folds",
+  "in band",
+  "trusted ends before",
+  "rate found/true",
+] as const;
 
 function troubleRow(f: FamilyOutcome): string[] {
   const hits = Math.round(f.named * f.runs);
