@@ -81,12 +81,9 @@ function measure(x: Float64Array, reduced: ReducedSeries, options: FullJudgeOpti
   const start = Math.min(startUpEnd(blocks), blocks.length - CYCLES_MIN);
   const kept = blocks.subarray(start);
   const fromIndex = Math.ceil(first + start * blockLength);
-  const interval = meanInterval(
-    blocks,
-    start,
-    options.fromDeveloped ? null : inverseTimes(reduced),
-    options.confidence,
-  );
+  const rise = riseOver(kept);
+  const inverse = options.fromDeveloped ? null : inverseTimes(reduced);
+  const interval = meanInterval(blocks, start, inverse, options.confidence, rise.noise);
   const spread = reduced.period === null ? variance(x.subarray(fromIndex)) : variance(kept);
   const count = reduced.period === null ? x.length - fromIndex : kept.length;
   return {
@@ -99,7 +96,7 @@ function measure(x: Float64Array, reduced: ReducedSeries, options: FullJudgeOpti
     halfWidth: interval.halfWidth,
     tolerance: absoluteTolerance(options.tolerance, interval.value),
     effective: interval.se > 0 ? Math.min(count, spread / interval.se ** 2) : count,
-    rise: riseOver(kept),
+    rise,
   };
 }
 
@@ -149,7 +146,7 @@ function enoughTests(m: Measured, reduced: ReducedSeries): TestResult[] {
 function stillnessTests(m: Measured): TestResult[] {
   const bound = boundTest(m.rise, m.tolerance, m.value);
   if (provenHarmless(m.rise, m.halfWidth, m.tolerance)) return [bound];
-  return [bound, trendTest(m.rise, m.value), levelTest(m.kept)];
+  return [bound, trendTest(m.rise, m.interval.trendT, m.value), levelTest(m.kept)];
 }
 
 function verdictOf(m: Measured, enough: readonly TestResult[], still: readonly TestResult[]): Verdict {

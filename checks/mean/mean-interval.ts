@@ -1,4 +1,4 @@
-import { mean, studentTQuantile } from "../estimators/index.ts";
+import { type Autoregression, mean, studentTQuantile } from "../estimators/index.ts";
 import { longRunVarianceOf, noiseOf } from "./noise.ts";
 import { type LevelBesideStartUp, levelBesideStartUp, type StartUpShape } from "./start-up-fit.ts";
 
@@ -21,6 +21,8 @@ export interface MeanInterval {
   readonly halfWidth: number;
   /** Start-up that was allowed for; null if none. */
   readonly startUp: StartUpShape | null;
+  /** Straight trend over nearly the whole record, in its standard errors, if it fits better than any start-up. */
+  readonly trendT: number | null;
 }
 
 /**
@@ -37,6 +39,7 @@ export interface MeanInterval {
  * @param start first block of the stretch; m − start >= 8
  * @param inverseTimes shape [m], average of 1/t over each block; null for records from developed flow
  * @param confidence in (0.5, 1)
+ * @param noise of the stretch beside its trend, for the fit
  * @returns unit of the blocks
  * @throws HISTORY_INVALID, NON_FINITE
  * @see Heidelberger & Welch (1981), A spectral method for confidence interval generation
@@ -46,12 +49,12 @@ export function meanInterval(
   start: number,
   inverseTimes: Float64Array | null,
   confidence: number,
+  noise: Autoregression,
 ): MeanInterval {
   const kept = blocks.subarray(start);
   const m = kept.length;
-  const noise = noiseOf(kept);
   const plain = mean(kept);
-  const se = Math.sqrt(longRunVarianceOf(noise) / m);
+  const se = Math.sqrt(longRunVarianceOf(noiseOf(kept)) / m);
   const misses = MISSES_SPENT * (1 - confidence);
   const t = studentTQuantile(1 - misses / 2, Math.min(DF_MAX, Math.floor(m / 2) - 1));
   const fit = inverseTimes && levelBesideStartUp(blocks, inverseTimes, noise);
@@ -62,6 +65,7 @@ export function meanInterval(
     value: (low + high) / 2,
     halfWidth: (high - low) / 2,
     startUp: fit?.shape ?? null,
+    trendT: fit?.trendT ?? null,
   };
 }
 

@@ -17,3 +17,13 @@ export function longRunVarianceOf({ coefficients, innovationVariance }: Autoregr
   if (innovationVariance === 0) return 0;
   return innovationVariance / (1 - coefficients.reduce((sum, phi) => sum + phi, 0)) ** 2;
 }
+
+/**
+ * The same of what a straight line through a stretch leaves, so that a movement does not hide behind the noise it makes.
+ *
+ * @param kept shape [m], m >= 8, finite
+ * @param perBlock slope of the line
+ */
+export function noiseBesideTrend(kept: Float64Array, perBlock: number): Autoregression {
+  return noiseOf(kept.map((value, i) => value - perBlock * i));
+}

@@ -1,7 +1,7 @@
 import type { FoundPeriod } from "../../orchestrator/contract/index.ts";
 import { batchMeans, cycleMeans, findPeriod, movingAverage } from "../estimators/index.ts";
 
-const BLOCKS_MAX = 4096;
+const BLOCKS_MAX = 1024;
 /** Whole cycles without which nothing is said of a periodic channel. */
 export const CYCLES_MIN = 8;
 
@@ -19,7 +19,7 @@ export interface ReducedSeries {
  * Takes the oscillation out of a series, so that what is left varies only because the mean is uncertain.
  *
  *   several periods: centred moving averages over all but the longest, then means over cycles of the longest;
- *   no period: means of neighbouring samples, at most 4096 blocks
+ *   no period: means of neighbouring samples, at most 1024 blocks
  *
  * Limits: a declared period that is wrong by a share e leaves a ripple of e times the oscillation.
  *

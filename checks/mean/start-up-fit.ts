@@ -9,9 +9,14 @@ export interface LevelBesideStartUp {
   /** Standard error with the shape taken as known, unit of the blocks. */
   readonly se: number;
   readonly shape: StartUpShape;
+  /** A straight trend over the same stretch, in its standard errors, if it fits better than any start-up; else null. */
+  readonly trendT: number | null;
 }
 
-const TIME_CONSTANTS = 13;
+const TIME_CONSTANTS = 9;
+/** Longest time constant, as a share of the record: what is slower is not over within the third that start-up may take. */
+const LONGEST_SHARE = 1 / 10;
+const SHORTEST_SHARE = 1 / 100;
 /** Fewest prewhitened blocks for a fit with one decaying term, and with two. */
 const BLOCKS_MIN = 8;
 const BLOCKS_EXPONENTIAL_MIN = 20;
@@ -23,7 +28,7 @@ const INVERSE_GAIN = 3.84;
  * Level of a record jointly with its start-up, all but the first 2 % of it used.
  *
  *   y = level + b/t, or level + a·exp(−t/τ), or level + a·exp(−t/τ) + b/t; generalised least squares by prewhitening with
- *   the autoregression of the noise; τ the best of 13 values from m/100 to m/3 blocks; the 1/t shape unless an exponential
+ *   the autoregression of the noise; τ the best of 9 values from m/100 to m/10 blocks; the 1/t shape unless an exponential
  *   fits better by 4.5 in χ², and both if 1/t then still gains 3.84
  *
  * Limits: tails slower than 1/t and start-ups of another kind are only covered as far as these shapes imitate them; the
@@ -31,7 +36,7 @@ const INVERSE_GAIN = 3.84;
  *
  * @param blocks shape [m], m >= 8, finite, from the impulsive start on
  * @param inverseTimes shape [m], the average of 1/t over each block
- * @param noise autoregression of the stretch after the start-up, unit of the blocks
+ * @param noise autoregression of the stretch after the start-up less its own trend, unit of the blocks
  * @returns null where there are too few blocks or no noise to measure by
  * @see Cochrane & Orcutt (1949), for prewhitening (from memory); choice and limits: our own, measured by simulation
  */
@@ -47,32 +52,57 @@ export function levelBesideStartUp(
   const y = prewhitened(blocks.subarray(from), noise);
   const one = new Float64Array(y.length).fill(1 - noise.coefficients.reduce((sum, phi) => sum + phi, 0));
   const inverse = prewhitened(inverseTimes.subarray(from), noise);
-  const fitted = (regressors: Float64Array[]) => {
-    const fit = leastSquares(y, [one, ...regressors]);
-    return (
-      fit && {
-        level: fit.coefficients[0]!,
-        se: Math.sqrt(v * fit.leverages[0]!),
-        chi: fit.residualSquares / v,
-      }
-    );
+  const shapes = y.length < BLOCKS_EXPONENTIAL_MIN ? [] : decays(m, y.length, noise);
+  const chosen = choose((regressors) => fitted(y, [one, ...regressors], v), inverse, shapes);
+  if (chosen === null) return null;
+  return {
+    level: chosen.level,
+    se: chosen.se,
+    shape: chosen.shape,
+    trendT: trendInstead(y, one, chosen.chi, v),
   };
-  type Fit = NonNullable<ReturnType<typeof fitted>>;
+}
+
+interface Fit {
+  readonly level: number;
+  readonly se: number;
+  readonly chi: number;
+}
+
+function fitted(y: Float64Array, columns: readonly Float64Array[], v: number): Fit | null {
+  const fit = leastSquares(y, columns);
+  if (fit === null) return null;
+  const se = Math.sqrt(v * fit.leverages[0]!);
+  return { level: fit.coefficients[0]!, se, chi: fit.residualSquares / v };
+}
+
+function choose(
+  solve: (regressors: readonly Float64Array[]) => Fit | null,
+  inverse: Float64Array,
+  shapes: readonly Float64Array[],
+): (Fit & { readonly shape: StartUpShape }) | null {
   const best = (fits: readonly (Fit | null)[]): Fit | null =>
     fits.reduce(
-      (least, fit) => (fit !== null && (least === null || fit.chi < least.chi) ? fit : least),
+      (least, one) => (one !== null && (least === null || one.chi < least.chi) ? one : least),
       null,
     );
-  const shapes = y.length < BLOCKS_EXPONENTIAL_MIN ? [] : decays(m, y.length, noise);
-  const inverseOnly = fitted([inverse]);
-  const exponential = best(shapes.map((shape) => fitted([shape])));
+  const inverseOnly = solve([inverse]);
+  const exponential = best(shapes.map((shape) => solve([shape])));
   if (inverseOnly === null) return null;
   if (exponential === null || inverseOnly.chi - exponential.chi <= EXPONENTIAL_GAIN)
     return { ...inverseOnly, shape: "inverse" };
-  const both = best(shapes.map((shape) => fitted([shape, inverse])));
+  const both = best(shapes.map((shape) => solve([shape, inverse])));
   return both !== null && exponential.chi - both.chi > INVERSE_GAIN
     ? { ...both, shape: "both" }
     : { ...exponential, shape: "exponential" };
+}
+
+/** A drift that no start-up explains: the straight line alone fits better than the best start-up. */
+function trendInstead(y: Float64Array, one: Float64Array, chi: number, v: number): number | null {
+  const ramp = Float64Array.from(y, (_, i) => i - (y.length - 1) / 2);
+  const line = leastSquares(y, [one, ramp]);
+  if (line === null || line.residualSquares / v >= chi) return null;
+  return line.coefficients[1]! / Math.sqrt(v * line.leverages[1]!);
 }
 
 /** What the autoregression can't foretell from the blocks before; shorter by its order. */
@@ -90,7 +120,9 @@ function prewhitened(x: Float64Array, { coefficients, order }: Autoregression): 
 function decays(m: number, length: number, { order }: Autoregression): Float64Array[] {
   const shapes: Float64Array[] = [];
   for (let k = 0; k < TIME_CONSTANTS; k++) {
-    const keep = Math.exp(-1 / ((m / 100) * (100 / 3) ** (k / (TIME_CONSTANTS - 1))));
+    const keep = Math.exp(
+      -1 / (m * SHORTEST_SHARE * (LONGEST_SHARE / SHORTEST_SHARE) ** (k / (TIME_CONSTANTS - 1))),
+    );
     const shape = new Float64Array(length);
     let value = keep ** order;
     for (let i = 0; i < length; i++) {

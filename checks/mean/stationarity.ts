@@ -1,5 +1,6 @@
 import type { TestResult } from "../../orchestrator/contract/index.ts";
 import {
+  type Autoregression,
   andrewsBandwidth,
   autocorrelation,
   batchMeans,
@@ -12,7 +13,7 @@ import {
   welchTest,
 } from "../estimators/index.ts";
 import { amountInWords, numberInWords } from "./amount-in-words.ts";
-import { longRunVarianceOf, noiseOf } from "./noise.ts";
+import { longRunVarianceOf, noiseBesideTrend } from "./noise.ts";
 
 const P_MIN = 0.05;
 const VARIANCE_P_MIN = 0.01;
@@ -27,6 +28,8 @@ export interface Rise {
   readonly se: number;
   readonly df: number;
   readonly p: number;
+  /** Noise beside the line. */
+  readonly noise: Autoregression;
   /** Largest movement that the data still allow, at 95 % one-sided. */
   readonly hidden: number;
 }
@@ -52,11 +55,10 @@ export function riseOver(kept: Float64Array): Rise {
   );
   const df = means.length - 2;
   const rise = line.slope * means.length;
-  const perBlock = rise / kept.length;
-  const rest = kept.map((value, i) => value - perBlock * i);
-  const se = Math.sqrt((12 * longRunVarianceOf(noiseOf(rest))) / kept.length);
+  const noise = noiseBesideTrend(kept, rise / kept.length);
+  const se = Math.sqrt((12 * longRunVarianceOf(noise)) / kept.length);
   const p = rise === 0 ? 1 : 2 * studentTCdf(-Math.abs(rise) / se, df);
-  return { rise, se, df, p, hidden: Math.abs(rise) + studentTQuantile(0.95, df) * se };
+  return { rise, se, df, p, noise, hidden: Math.abs(rise) + studentTQuantile(0.95, df) * se };
 }
 
 /** Whether the largest movement still possible is harmless at this tolerance, whatever the other tests say. */
@@ -79,19 +81,24 @@ export function boundTest(rise: Rise, tolerance: number, mean: number): TestResu
   };
 }
 
-/** Whether the straight-line movement stands out of the noise. */
-export function trendTest(rise: Rise, mean: number): TestResult {
-  const passed = rise.p >= P_MIN;
+/**
+ * Whether a straight trend stands out of the noise: over the window, or over nearly the whole record where a trend fits
+ * that better than any start-up does, so that a drift is not cut away as if it were one.
+ */
+export function trendTest(rise: Rise, insteadOfStartUp: number | null, mean: number): TestResult {
+  const statistic = Math.max(Math.abs(rise.rise / rise.se) || 0, Math.abs(insteadOfStartUp ?? 0));
+  const p = 2 * studentTCdf(-statistic, rise.df);
+  const passed = p >= P_MIN;
   const way = rise.rise < 0 ? "falls" : "rises";
   return {
     name: "trend",
-    statistic: Math.abs(rise.rise) / rise.se || 0,
+    statistic,
     limit: studentTQuantile(1 - P_MIN / 2, rise.df),
-    p: rise.p,
+    p,
     passed,
     words: passed
       ? "no straight trend stands out of the noise"
-      : `the mean ${way} by ${amountInWords(rise.rise, mean)} over the window, more than chance explains (p = ${numberInWords(rise.p)})`,
+      : `the mean ${way} by ${amountInWords(rise.rise, mean)} over the window, and its trend is more than chance explains (p = ${numberInWords(p)})`,
   };
 }
 
