@@ -1,5 +1,5 @@
 /** A linear least-squares fit with few regressors. */
-export interface LeastSquares {
+interface LeastSquares {
   /** One a regressor. */
   readonly coefficients: readonly number[];
   /** Diagonal of (XᵀX)⁻¹: the coefficients' variances for residuals of unit variance. */

@@ -4,7 +4,7 @@ import { mean } from "./mean.ts";
 import { studentTCdf } from "./student-t.ts";
 
 /** A straight line y = intercept + slope · u, with the standard errors of ordinary least squares. */
-export interface Line {
+interface Line {
   readonly intercept: number;
   readonly slope: number;
   readonly interceptSe: number;

@@ -6,6 +6,7 @@ import { judgeRecord, nextLookLength } from "../../checks/index.ts";
 import { FINISHED_SCENARIOS, SCENARIOS } from "./stationarity/families/index.ts";
 import { markdownTable } from "./stationarity/markdown-table.ts";
 import { type Characteristics, fixedLength, type RuleUnderTest, sequential } from "./stationarity/measure.ts";
+import type { Scenario } from "./stationarity/scenario.ts";
 
 const { values } = parseArgs({
   options: {
@@ -20,8 +21,10 @@ const { values } = parseArgs({
 const seed = Number(values.seed);
 const replications = Number(values.replications ?? (values.quick ? 40 : 400));
 const rule: RuleUnderTest = { judge: judgeRecord, nextLook: nextLookLength };
-const chosen = SCENARIOS.filter((s) => s.name.includes(values.only));
-const finished = FINISHED_SCENARIOS.filter((s) => s.name.includes(values.only));
+const wanted = ({ name }: Scenario, _: number, all: readonly Scenario[]) =>
+  all.some((s) => s.name === values.only) ? name === values.only : name.includes(values.only);
+const chosen = SCENARIOS.filter(wanted);
+const finished = FINISHED_SCENARIOS.filter(wanted);
 /** Length of the fixed-length records in oracle lengths: the tolerance is then 2.2 ideal half-widths. */
 const FIXED = 2.2 ** 2;
 
