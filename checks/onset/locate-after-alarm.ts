@@ -25,9 +25,11 @@ export interface LocateOptions {
   readonly alarms?: readonly OnsetAlarm[];
 }
 
-/** Blocks between the skipped start and the onset, and the band before it, without which there is no baseline. */
+/** Blocks between the skipped start and an onset without which there is no baseline. */
 const BASELINE_BLOCKS_MIN = 4;
+/** Blocks between the skipped start and the band; where the band is wide, an onset well inside the run will do. */
 const BAND_BLOCKS_MIN = 2;
+const INSIDE_BLOCKS = 15;
 /** Blocks after the first alarm within which another channel agrees. */
 const AGREE_BLOCKS = 10;
 
@@ -95,9 +97,10 @@ function locate(x: Float64Array, alarm: OnsetAlarm, layout: MonitorLayout): Loca
 }
 
 function hasBaseline(located: Located, { skip, block }: MonitorLayout): boolean {
-  return (
-    located.index >= skip + BASELINE_BLOCKS_MIN * block && located.band[0] >= skip + BAND_BLOCKS_MIN * block
-  );
+  const blocksBefore = (index: number) => (index - skip) / block;
+  const onset = blocksBefore(located.index);
+  if (onset < BASELINE_BLOCKS_MIN) return false;
+  return blocksBefore(located.band[0]) >= BAND_BLOCKS_MIN || onset >= INSIDE_BLOCKS;
 }
 
 function channelsAgreeing(alarm: OnsetAlarm, alarms: readonly OnsetAlarm[], layout: MonitorLayout): string[] {
