@@ -58,6 +58,7 @@ export function judgeNoisy(
   const tests = [...enough, ...still, ...(spread === null ? [] : [spread])];
   const verdict = verdictOf(measured, enough, still);
   const failing = [...enough, ...still].filter((test) => !test.passed);
+  const more = verdict === "needs-longer" ? needed(measured, failing) : null;
   return {
     ...emptyJudgement(options),
     verdict,
@@ -69,10 +70,10 @@ export function judgeNoisy(
     effectiveSamples: measured.effective,
     period: reduced.period && { ...reduced.period, cycles: measured.kept.length },
     warnings: spread?.passed === false ? ["variance-changed"] : [],
-    samplesNeeded: verdict === "needs-longer" ? needed(measured, failing) : null,
+    samplesNeeded: more,
     hiddenDrift: measured.rise.hidden,
     tests,
-    words: inWords(verdict, measured, failing),
+    words: inWords(verdict, measured, failing, more),
   };
 }
 
@@ -165,14 +166,20 @@ function needed(m: Measured, failing: readonly TestResult[]): readonly [number, 
   return samplesNeeded(n, m.fromIndex, Math.max(width, shortage));
 }
 
-function inWords(verdict: Verdict, m: Measured, failing: readonly TestResult[]): string {
+function inWords(
+  verdict: Verdict,
+  m: Measured,
+  failing: readonly TestResult[],
+  more: readonly [number, number] | null,
+): string {
   const value = `${numberInWords(m.value)} ± ${numberInWords(m.halfWidth)}`;
   if (verdict === "accepted") return `accepted: ${value} over samples ${m.fromIndex} to ${m.x.length}`;
   // The first two reasons say what to do; the rest stands in the tests.
-  const order = verdict === "drifting" ? [...failing].reverse() : failing;
-  const reasons = order
+  const reasons = (verdict === "drifting" ? [...failing].reverse() : failing)
     .slice(0, 2)
     .map((test) => test.words)
     .join("; ");
-  return verdict === "drifting" ? `drifting: ${reasons}` : `needs longer: ${reasons}`;
+  return more === null
+    ? `drifting: ${reasons}; go on only if the movement has to end, and look for what drives it`
+    : `needs longer: ${reasons}; ${more[0]} to ${more[1]} samples in all would probably do`;
 }

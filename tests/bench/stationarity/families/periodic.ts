@@ -27,4 +27,9 @@ export const periodic: readonly Scenario[] = [
   wave("period 36 unknown", sine(36), []),
   wave("period 31.7 unknown", sine(31.7), []),
   wave("saw-tooth 7 and period 18 declared", (i) => sine(18)(i) + sawTooth(7)(i), [7, 18]),
+  {
+    ...wave("few cycles of 18 declared", sine(18), [18]),
+    oracle: 200,
+    tolerance: oracleHalfWidth(noise.longRunSd, 200),
+  },
 ];

@@ -37,5 +37,6 @@ export const stationary: readonly Scenario[] = [
   steady(ringing),
   steady(skewed),
   steady(heavyTailed),
+  { ...steady(autoregressive(0.9), 500), name: "AR(1) 0.9, loose tolerance" },
   varianceChange,
 ];

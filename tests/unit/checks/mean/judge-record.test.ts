@@ -42,6 +42,9 @@ describe("a sound record", () => {
     expect(judged.verdict).toBe("needs-longer");
     expect(judged.words).toMatch(/4000 of the 4001 samples/);
   });
+  it("is known better when restarted from developed flow, since no start-up has to be feared", () => {
+    expect(judge(x, { fromDeveloped: true }).halfWidth!).toBeLessThan(judge(x).halfWidth!);
+  });
   it("takes its window's times from the times given", () => {
     const times = Float64Array.from(x, (_, i) => 7 + i);
     expect(judge(x, { times }).window!.toTime).toBe(4006);
