@@ -44,14 +44,16 @@ export class LegProcess {
     order: LegOrder,
     { signal, onProgress }: { signal: AbortSignal; onProgress: (progress: LegProgress) => void },
   ): Promise<LegEnding> {
-    let child: ChildProcess;
+    let child: ChildProcess | null;
     try {
-      child = await this.#ready();
+      child = await unlessAborted(this.#ready(), signal);
     } catch (error) {
       this.#child = null;
       const reason = error instanceof Error ? error.message : String(error);
       return { kind: "died", reason, output: this.#output.lines, fromOutside: signal.aborted };
     }
+    if (child === null || signal.aborted)
+      return { kind: "died", reason: "it was not begun", output: [], fromOutside: true };
     return this.#converse(child, order, signal, onProgress);
   }
 
@@ -134,10 +136,24 @@ export class LegProcess {
       if (isGone(child)) onClose(child.exitCode, child.signalCode);
       else {
         tell(child, order);
-        if (signal.aborted) onAbort();
-        else signal.addEventListener("abort", onAbort, { once: true });
+        signal.addEventListener("abort", onAbort, { once: true });
       }
     });
+  }
+}
+
+/** What is awaited, or null as soon as the signal aborts: nobody waits for a process that is only starting. */
+async function unlessAborted<T>(awaited: Promise<T>, signal: AbortSignal): Promise<T | null> {
+  let onAbort = () => {};
+  const abort = new Promise<null>((resolve) => {
+    onAbort = () => resolve(null);
+    if (signal.aborted) onAbort();
+    else signal.addEventListener("abort", onAbort, { once: true });
+  });
+  try {
+    return await Promise.race([awaited, abort]);
+  } finally {
+    signal.removeEventListener("abort", onAbort);
   }
 }
 

@@ -16,6 +16,12 @@ const LEG_SECONDS = 5;
 const RESERVE_BYTES = 48 * 2 ** 20;
 /** Deaths in a row, by a hand from outside, after which a run is given up. */
 const DEATHS_MAX = 3;
+/** How often the night looks whether the queue has forgotten something. */
+const RECONCILE_MS = 3000;
+/** Complaints of the queue that a night bears. */
+const QUEUE_TROUBLES_MAX = 200;
+/** Tries of tickets that a rebuild makes count from here. */
+const REBUILT = 1000;
 /** Shortest time between two tallies. */
 const TALLY_MS = 1000;
 /** Longest time that a timer is set for, so that a clock that jumps is noticed. */
@@ -42,6 +48,10 @@ export class NightWork {
   #trouble: Trouble = null;
   #bug: unknown = null;
   #timer: NodeJS.Timeout | null = null;
+  #reconciler: NodeJS.Timeout | null = null;
+  #wasIdle = false;
+  #queueTroubles = 0;
+  #rebuilds = 0;
   #toldMs = 0;
 
   constructor(
@@ -76,10 +86,11 @@ export class NightWork {
     if (this.#ledger.open().length === 0) return this.#begin("all-done");
     this.#watchDeadline();
     if (this.#end !== null) return;
+    this.#reconciler = setInterval(() => this.#reconcile(), RECONCILE_MS);
     this.#consumer = this.#queue.consume({
       size: runner.size,
       handle: (ticket) => this.#handle(ticket),
-      onError: (error) => this.#meet(error),
+      onError: (error) => this.#meetInQueue(error),
     });
   }
 
@@ -99,7 +110,7 @@ export class NightWork {
   #begin(end: NightEnd): void {
     if (this.#end !== null) return;
     this.#end = end;
-    if (this.#timer !== null) clearTimeout(this.#timer);
+    for (const timer of [this.#timer, this.#reconciler]) if (timer !== null) clearTimeout(timer);
     this.#abort.abort();
     this.#windDown().then(
       (summary) => {
@@ -154,7 +165,8 @@ export class NightWork {
       this.#options.onEvent({ kind: "idle", worker });
     }
     // Only now, since another worker may take it at once.
-    if (next !== null && this.#end === null) await this.#queue.add([next]);
+    if (next !== null && this.#end === null)
+      await this.#queue.add([next]).catch((error: unknown) => this.#meetInQueue(error));
     this.#endIfNothingIsLeft();
   }
 
@@ -274,6 +286,32 @@ export class NightWork {
     // While the night winds down the queue may complain about what was taken from it.
     if (this.#end === null) this.#bug ??= error;
     this.#begin("stopped");
+  }
+
+  /**
+   * The queue is a cache. It may complain (a manager that slept past its locks, say) and even lose a ticket: what it says
+   * is told, and the reconciler makes good what is missing. Only a queue that goes on complaining is a bug.
+   */
+  #meetInQueue(error: unknown): void {
+    this.#queueTroubles += 1;
+    if (isDiskFull(error) || this.#queueTroubles > QUEUE_TROUBLES_MAX) this.#meet(error);
+    const words = error instanceof Error ? error.message : String(error);
+    if (this.#end === null) this.#options.onEvent({ kind: "notice", words: `queue: ${words}` });
+  }
+
+  /** Rebuilds the queue from the store when runs are open and nothing has been taken for a while. */
+  #reconcile(): void {
+    const idle = this.#inFlight.size === 0 && this.#end === null;
+    if (idle && this.#wasIdle) this.#rebuild().catch((error: unknown) => this.#meetInQueue(error));
+    this.#wasIdle = idle;
+  }
+
+  async #rebuild(): Promise<void> {
+    this.#rebuilds += 1;
+    const { list } = await this.#options.folder.store.campaignState(this.#options.plan.campaign);
+    const open = list.filter((run) => run.state !== "done" && !this.#aside.has(run.runId));
+    // A ticket that is still there is not replaced; one that was taken and forgotten has another name now.
+    await this.#queue.add(open.map((run) => this.#queued(run, REBUILT + this.#rebuilds)));
   }
 
   #endIfNothingIsLeft(): void {

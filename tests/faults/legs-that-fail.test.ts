@@ -172,6 +172,18 @@ describe("legs that are disturbed from outside", () => {
     await folder.close();
   });
 
+  it("come out the same when the queue forgets every ticket", async () => {
+    let cleared = 0;
+    const { folder } = await disturbedNight("forgotten", async (folder) => {
+      if (cleared >= 2) return false;
+      cleared += 1;
+      await (await folder.legQueue()).clear();
+      return true;
+    });
+    expect(cleared).toBe(2);
+    await folder.close();
+  });
+
   async function expectNothingTwice(folder: DataFolder, run: PlannedRun): Promise<void> {
     const pieces = await folder.store.historyPieces(run.runId, 1);
     let next = 1;

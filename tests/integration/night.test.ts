@@ -29,7 +29,7 @@ describe("a night of small processes", () => {
       { label: "steady", inputs: steady(1) },
       { label: "with a start-up", inputs: steady(2, { startUp: 1, startUpSteps: 30 }) },
       { label: "growing", inputs: steady(3, { phi: 0.9, growFrom: 1500, growth: 0.03 }) },
-      { label: "too short", inputs: steady(4, { phi: 0.99 }), longestSteps: 400 },
+      { label: "too short", inputs: steady(4, { phi: 0.99 }), longestSteps: 150 },
     ],
   });
 
@@ -87,7 +87,7 @@ describe("a night of small processes", () => {
     const detail = await folder.store.runDetail((await folder.store.campaignState("small")).list[0]!.runId);
     expect(detail.attempts).toMatchObject([{ attempt: 1, steps: 900 }]);
     const pieces = await folder.store.historyPieces(detail.runId, 1);
-    expect(pieces.map((piece) => piece.fromStep)).toEqual([1, 401]);
+    expect(pieces.map((piece) => piece.fromStep)).toEqual([1, 151]);
   });
 
   it("stops within 2 s when told to, keeps what was computed, and goes on to the same numbers", async () => {
@@ -148,6 +148,18 @@ describe("a night of small processes", () => {
     expect(detail.attempts.map((attempt) => attempt.settings)).toEqual([{}, ...remedies.map((r) => r.set)]);
     expect(detail.campaigns[0]!.past.map((past) => past.verdict)).toEqual(["unstable", "unstable"]);
     for (const past of detail.campaigns[0]!.past) expect(past.reason).not.toBe("");
+  });
+
+  it("goes on with the attempts that another campaign has made with the same remedies", async () => {
+    const runs = [{ label: "growing", inputs: steady(31, { growFrom: 300, growth: 0.03 }) }];
+    const remedies = [
+      { name: "called otherwise", set: { growFrom: 100_000, growth: 0 }, cost: "leaves the growth out" },
+    ];
+    const again = testPlan({ name: "remedied again", runs, remedies });
+    const { summary } = await wholeNight(folder, again, runner);
+    expect(summary).toMatchObject({ computeSeconds: 0, verdicts: { accepted: 1 } });
+    const [load] = campaignLoads(await folder.store.campaignState("remedied again"));
+    expect(load).toMatchObject({ accepted: true, attempt: 3, remedy: { name: "called otherwise" } });
   });
 
   it("shares its legs out: every run gets its first one before any gets its second", async () => {
