@@ -30,6 +30,8 @@ const BASELINE_BLOCKS_MIN = 4;
 /** Blocks between the skipped start and the band; where the band is wide, an onset well inside the run will do. */
 const BAND_BLOCKS_MIN = 2;
 const INSIDE_BLOCKS = 15;
+/** Blocks between a shift of the mean and later trouble that make them two events. */
+const SHIFT_BLOCKS_MIN = 12;
 /** Blocks after the first alarm within which another channel agrees. */
 const AGREE_BLOCKS = 10;
 
@@ -50,7 +52,7 @@ export function locateAfterAlarm(history: RunHistory, alarm: OnsetAlarm, options
   }
   const layout = monitorLayout(options.periodsSteps, options.plannedSteps);
   const agreeing = channelsAgreeing(alarm, options.alarms ?? [], layout);
-  const located = locate(x, alarm, layout);
+  const located = locate(x, alarm, { ...layout, skip: soundFrom(x, alarm, options.alarms ?? [], layout) });
   if (located === null || !hasBaseline(located, layout)) return noBaseline(alarm, agreeing);
   const band = withinHistory(located, x.length);
   const facts = {
@@ -94,6 +96,19 @@ function locate(x: Float64Array, alarm: OnsetAlarm, layout: MonitorLayout): Loca
         monotone: alarm.source === "monotone",
       });
   }
+}
+
+/** Where the stretch that the alarm is held against begins: after the start, and after an earlier shift of the mean. */
+function soundFrom(
+  x: Float64Array,
+  alarm: OnsetAlarm,
+  alarms: readonly OnsetAlarm[],
+  layout: MonitorLayout,
+): number {
+  const shift = alarms.find((a) => a.source === "mean-shift" && a.channel === alarm.channel);
+  const latest = alarm.suspectIndex - SHIFT_BLOCKS_MIN * layout.block;
+  if (shift === undefined || shift === alarm || shift.suspectIndex > latest) return layout.skip;
+  return locateMeanShift(x, layout, { suspect: shift.suspectIndex, to: alarm.suspectIndex }).index + 1;
 }
 
 function hasBaseline(located: Located, { skip, block }: MonitorLayout): boolean {

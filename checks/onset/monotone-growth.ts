@@ -19,8 +19,8 @@ const LEVELS_MAX = 20;
  * Blocks double in length from level to level, so that one of them shows a growth of 1.7 to 2.9 a block whatever the
  * rate is. The noise is the median size of past differences at that level, divided by 0.6745.
  *
- * Limits: needs nine blocks at the level that fits, that is 5 to 8 e-folds of growth after a baseline of four; a growth
- * below one e-fold in a twentieth of the run is not called.
+ * Limits: needs nine differences at the level that fits, so a growth by less than 5 e-folds in the whole run is not
+ * called; the call comes 4 to 9 e-folds after the growth has left the noise.
  */
 export class MonotoneGrowth {
   private readonly levels: DyadicLevel[] = [];

@@ -8,8 +8,8 @@ const NORMAL_MAD = 0.674489750196082;
  *
  *   scale = median|v − median v| / 0.67449
  *
- * Limits: consistent for normal data only; reads up to a quarter low for periodic and for heavy-tailed data, about
- * zero if more than half of the values are equal. Half of the values may be arbitrarily wrong.
+ * Limits: the standard deviation for normal data only; 1.48 times it for a sine, 0.65 times for Student's t with 3
+ * degrees of freedom, and 0 if more than half of the values are equal. Fewer than half may be arbitrarily wrong.
  *
  * @param values shape [>= n]; left alone
  * @param scratch shape [>= n]; overwritten
