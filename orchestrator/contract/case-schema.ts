@@ -269,7 +269,9 @@ const numericsSchema = z
     truncate_every: whole(1, 100)
       .default(7)
       .describe("Steps between cuts of the wakes; no divisor of the blade-passing period."),
-    relaxation: number(0.05, 1).default(0.35).describe("Relaxation of the rotor circulations."),
+    relaxation: number(0.05, 1)
+      .default(0.8)
+      .describe("Relaxation of the rotor circulations in the passes of a step."),
     cores: coresSchema.prefault({}),
   })
   .describe("Numerical settings.");

@@ -42,7 +42,7 @@ export function writeMutualInfluence(
         const column = firstSection + c;
         for (let i = 0; i < sections.count; i++) {
           take(point, sections, i);
-          addRingVelocity(bound, corners, rotor.boundCore, point, clear(sum));
+          addRingVelocity(bound, corners, rotor.selfCore, point, clear(sum));
           put(out.bladeOnBlade, i * sections.count + column, sum);
         }
         for (let i = 0; i < wing.panels; i++) {

@@ -34,7 +34,8 @@ interface Velocities {
 
 /**
  * Circulations of wing and blades that fit each other: impermeability on the wing, Γ = ½ W c cl(α) on the blades, by
- * Gauss–Seidel passes over the sections with relaxation, the wing solved anew in each.
+ * Gauss–Seidel passes over the sections, the wing solved anew in each. A pass moves a section by relaxation / (1 + its gain on
+ * itself) of what its flow asks for.
  *
  * @returns passes done, whole ones and the part of the last one that was needed (by its rate of convergence); 0 without rotors
  */
@@ -88,12 +89,23 @@ function passOverSections(problem: CirculationProblem): number {
         const wanted = sectionCirculation(rotor, k, i, problem);
         const now = problem.circulation[i]!;
         change = Math.max(change, Math.abs(wanted - now));
-        problem.circulation[i] = now + problem.relaxation * (wanted - now);
+        problem.circulation[i] =
+          now + (problem.relaxation * (wanted - now)) / (1 + selfGain(rotor, k, i, problem));
         largest = Math.max(largest, Math.abs(problem.circulation[i]!));
       }
     }
   }
   return change / largest;
+}
+
+/**
+ * By how much a section's own circulation takes back what its flow asks for, about:  ½ c · 2π · |velocity by its ring of 1|.
+ * Finely divided blades have gains far above 1, at which plain passes would diverge.
+ */
+function selfGain(rotor: Rotor, k: number, i: number, { influence, sections }: CirculationProblem): number {
+  const at = i * sections.count + i;
+  const { u, v, w } = influence.bladeOnBlade;
+  return Math.PI * rotor.layout.chords[k]! * Math.sqrt(u[at]! ** 2 + v[at]! ** 2 + w[at]! ** 2);
 }
 
 function writeFlow(

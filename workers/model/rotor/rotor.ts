@@ -12,6 +12,9 @@ import { type SectionPolar, sectionPolar } from "./section-polar.ts";
 /** Part of the chord from the lifting line to the trailing edge. */
 const LINE_TO_TRAILING_EDGE = 0.75;
 
+/** Core length with which bound lattices and first rows act on blades, in tip radii: small against any section. */
+const SELF_CORE_RADII = 1e-3;
+
 /** One blade: bound rings from the lifting line (row 0) to the trailing edge (row 1), and the wake. */
 export interface Blade {
   readonly bound: Lattice;
@@ -36,8 +39,9 @@ export interface Rotor {
   readonly omega: number;
   readonly turn: 1 | -1;
   readonly sense: 1 | -1;
-  /** Core length of the bound lattice and of the wake's first row, m. */
+  /** Core length of the bound lattice and of the wake's first row, as wing and wakes feel them and as blades do, m. */
   readonly boundCore: number;
+  readonly selfCore: number;
   readonly blades: readonly Blade[];
 }
 
@@ -114,6 +118,7 @@ export function createRotors(
       turn: rotor.rotation === "right-handed" ? 1 : -1,
       sense: sense(rotor),
       boundCore,
+      selfCore: SELF_CORE_RADII * rotor.radius_m,
       blades,
     };
   });

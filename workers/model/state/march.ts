@@ -3,7 +3,7 @@ import { solveCirculations } from "../circulations/solve-circulations.ts";
 import { dropRows, type PairKernel, typescriptKernel, type Velocities } from "../kernel/index.ts";
 import { rotorLoads } from "../loads/rotor-loads.ts";
 import { wingLoads } from "../loads/wing-loads.ts";
-import { placeRotor, writeBladeEdges } from "../rotor/rotor.ts";
+import { placeRotor, type Rotor, writeBladeEdges } from "../rotor/rotor.ts";
 import { setFirstCores, writeCores } from "../wake/core-growth.ts";
 import {
   convect,
@@ -84,11 +84,9 @@ function dressWakes(state: ModelState): void {
   }
   writeCores(state.wing.wake, state.wingLaw, state.step, dtSeconds);
   state.rotors.forEach((rotor, i) => {
-    for (const { wake } of rotor.blades) {
-      writeCores(wake, state.rotorLaws[i]!, state.step, dtSeconds);
-      setFirstCores(wake, rotor.boundCore);
-    }
+    for (const { wake } of rotor.blades) writeCores(wake, state.rotorLaws[i]!, state.step, dtSeconds);
   });
+  setBladeCores(state, (rotor) => rotor.boundCore);
 }
 
 /** Air against the bodies by wind, motion and wakes: at all points of the wing and at the sections. */
@@ -105,7 +103,15 @@ function outerVelocities(state: ModelState, kernel: PairKernel): void {
     problem.outer.v[i] = -sections.v[i]!;
     problem.outer.w[i] = -sections.w[i]!;
   }
-  if (sections.count > 0) kernel.induce(wakes, sectionPoints, problem.outer);
+  if (sections.count === 0) return;
+  // The blades feel first rows likewise with the core that the rings before them have there.
+  setBladeCores(state, (rotor) => rotor.selfCore);
+  kernel.induce(wakes, sectionPoints, problem.outer);
+  setBladeCores(state, (rotor) => rotor.boundCore);
+}
+
+function setBladeCores({ rotors }: ModelState, coreOf: (rotor: Rotor) => number): void {
+  for (const rotor of rotors) for (const { wake } of rotor.blades) setFirstCores(wake, coreOf(rotor));
 }
 
 /** Wind less the body's own velocity at the points of the wing. */

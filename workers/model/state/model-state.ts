@@ -69,11 +69,11 @@ export const wingWakeCapacity = (inputs: Case, times: Timing): number =>
 /**
  * The state before the first step.
  *
+ * @param path the flight path, where it is to be another than the one of the inputs
  * @throws CASE_INVALID where the inputs contradict each other
  */
-export function createState(inputs: Case): ModelState {
+export function createState(inputs: Case, path: FlightPath = flightPath(inputs)): ModelState {
   const times = timing(inputs);
-  const path = flightPath(inputs);
   const geometry = wingGeometry(inputs.wing, clustersOf(inputs));
   const { cores } = inputs.numerics;
   const chord = geometry.planform.meanChordM;
