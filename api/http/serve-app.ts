@@ -3,11 +3,14 @@ import type { AddressInfo } from "node:net";
 import type { Express } from "express";
 import { AppError } from "../../orchestrator/contract/index.ts";
 
+/** How long an answer may still take when the server closes: the one to "stop" is given at that very moment. */
+const GRACE_MS = 500;
+
 /** A server that listens. */
 export interface Serving {
   readonly host: string;
   readonly port: number;
-  /** Takes no more requests and cuts those still open. */
+  /** Takes no more requests, lets those being answered finish for a moment, and cuts the rest. */
   close(): Promise<void>;
 }
 
@@ -29,8 +32,12 @@ export async function serveApp(
     port: (server.address() as AddressInfo).port,
     close: () =>
       new Promise((resolve) => {
-        server.close(() => resolve());
-        server.closeAllConnections();
+        const cut = setTimeout(() => server.closeAllConnections(), GRACE_MS);
+        server.close(() => {
+          clearTimeout(cut);
+          resolve();
+        });
+        server.closeIdleConnections();
       }),
   };
 }

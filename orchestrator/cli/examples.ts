@@ -6,5 +6,5 @@ export function withExamples(
   examples: readonly (readonly [line: string, what: string])[],
 ): Command {
   const lines = examples.map(([line, what]) => `  $ ${line}\n      ${what}`);
-  return command.addHelpText("after", `\nExamples:\n${lines.join("\n")}\n`);
+  return command.addHelpText("after", `\nExamples:\n${lines.join("\n")}`);
 }

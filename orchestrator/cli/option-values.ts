@@ -21,6 +21,17 @@ export function confidenceValue(text: string): number {
   throw wrong("--confidence", text, `${fix} It has to lie between 0.5 and 1.`);
 }
 
+/** A period in samples: at least two of them. */
+export function periodValue(text: string): number {
+  const value = plainNumber(text);
+  if (value >= 2 && Number.isFinite(value)) return value;
+  throw wrong(
+    "--period",
+    text,
+    "Give a length in samples, 2 or more; it need not be whole. In the unit of time it is --period-time.",
+  );
+}
+
 /** A number above zero, for the option named. */
 export function positiveValue(option: string, unit: string): (text: string) => number {
   return (text) => {

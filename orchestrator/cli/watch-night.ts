@@ -18,11 +18,15 @@ import { nightDisplay } from "./night-display.ts";
 export interface WatchOptions {
   readonly plan: Plan;
   readonly folder: DataFolder;
-  readonly runner: LegRunner;
+  /** Makes what computes the legs; told where to say what happens to its processes. */
+  readonly makeRunner: (onNotice: (words: string) => void) => LegRunner;
 }
 
 /** Runs a night in the foreground: shows it, answers other commands, and stops when interrupted. */
-export async function watchNight({ plan, folder, runner }: WatchOptions, io: CliIo): Promise<NightSummary> {
+export async function watchNight(
+  { plan, folder, makeRunner }: WatchOptions,
+  io: CliIo,
+): Promise<NightSummary> {
   let picture: LiveNight | null = null;
   let night: Night | null = null;
   let interrupted = false;
@@ -33,6 +37,7 @@ export async function watchNight({ plan, folder, runner }: WatchOptions, io: Cli
     // `done` below tells of a failure.
     night?.stop().catch(() => {});
   });
+  const runner = makeRunner((words) => display.show({ kind: "notice", words }, picture));
   const options: NightOptions = {
     folder,
     plan,
@@ -43,8 +48,9 @@ export async function watchNight({ plan, folder, runner }: WatchOptions, io: Cli
       display.show(event, picture);
     },
   };
-  const serving = await serveFolder(folder, () => picture, io);
+  let serving: Serving | null = null;
   try {
+    serving = await serveFolder(folder, () => picture, io);
     night = await startNight(options);
     if (interrupted) night.stop().catch(() => {});
     return await night.done;
@@ -52,7 +58,8 @@ export async function watchNight({ plan, folder, runner }: WatchOptions, io: Cli
     unsubscribe();
     display.end();
     removeServerFile(folder.dir);
-    await serving.close();
+    await serving?.close();
+    await runner.close();
   }
 }
 

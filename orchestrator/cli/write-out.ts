@@ -20,3 +20,8 @@ export async function writeOut(stream: OutStream, text: string): Promise<void> {
 export async function writeJson(stream: OutStream, document: unknown): Promise<void> {
   await writeOut(stream, `${JSON.stringify(document, null, 2)}\n`);
 }
+
+/** Width of the terminal behind a stream in characters; null where none is, so that lines may be as long as they like. */
+export function terminalWidth(stream: OutStream): number | null {
+  return stream.isTTY === true ? (stream.columns ?? 100) : null;
+}

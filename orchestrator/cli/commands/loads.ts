@@ -9,7 +9,7 @@ import { withExamples } from "../examples.ts";
 import { wordValue } from "../option-values.ts";
 import { runTable } from "../run-table.ts";
 import { saveFile } from "../save-file.ts";
-import { writeOut } from "../write-out.ts";
+import { terminalWidth, writeOut } from "../write-out.ts";
 
 const FORMATS = ["table", "csv", "json"] as const;
 
@@ -58,8 +58,7 @@ function asText(rows: readonly LoadRow[], options: LoadsOptions, io: CommandIo):
   const format = options.format ?? (options.json === true ? "json" : "table");
   if (format === "csv") return loadsCsv(rows);
   if (format === "json") return `${JSON.stringify({ loads: rows, caution: CAUTION }, null, 2)}\n`;
-  const onTerminal = io.stdout.isTTY === true && options.out === undefined;
-  const table = runTable(rows, { width: onTerminal ? (io.stdout.columns ?? 100) : null });
+  const table = runTable(rows, { width: options.out === undefined ? terminalWidth(io.stdout) : null });
   const note =
     options.all === true && rows.some((row) => !row.accepted)
       ? "In parentheses: not accepted, not to be used.\n"

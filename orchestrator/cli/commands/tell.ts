@@ -4,7 +4,7 @@ import type { CommandIo } from "../cli-io.ts";
 import { type DataOptions, withAnswers, withData } from "../data-folder.ts";
 import { withExamples } from "../examples.ts";
 import { campaignsWords, campaignWords } from "../tell-words.ts";
-import { writeJson, writeOut } from "../write-out.ts";
+import { terminalWidth, writeJson, writeOut } from "../write-out.ts";
 
 interface TellOptions extends DataOptions {
   readonly json?: boolean;
@@ -59,5 +59,5 @@ function shortState(state: CampaignState): object {
 }
 
 function style(io: CommandIo): { width: number | null; now: Date } {
-  return { width: io.stdout.isTTY === true ? (io.stdout.columns ?? 100) : null, now: io.now() };
+  return { width: terminalWidth(io.stdout), now: io.now() };
 }

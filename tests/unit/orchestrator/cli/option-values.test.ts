@@ -1,6 +1,7 @@
 import { describe, expect, it } from "vitest";
 import {
   confidenceValue,
+  periodValue,
   positiveValue,
   repeatable,
   toleranceValue,
@@ -32,8 +33,11 @@ describe("values of options", () => {
   });
 
   it("takes positive numbers, whole numbers and words", () => {
-    expect(positiveValue("--period", "samples")("36.5")).toBe(36.5);
-    expect(() => positiveValue("--period", "samples")("0")).toThrow("--period");
+    expect(positiveValue("--period-time", "the unit of time")("0.365")).toBe(0.365);
+    for (const text of ["0", "", "x", "-1"])
+      expect(() => positiveValue("--period-time", "s")(text)).toThrow("--period-time");
+    expect(periodValue("36.5")).toBe(36.5);
+    for (const text of ["1.9", "", "x"]) expect(() => periodValue(text)).toThrow("--period");
     expect(wholeValue("--planned", 1)("5000")).toBe(5000);
     for (const text of ["0", "1.5", "", "9007199254740993"])
       expect(() => wholeValue("--planned", 1)(text)).toThrow("--planned");
