@@ -38,9 +38,11 @@ export class BlockReader {
   private readonly scratch: Float64Array;
   private readonly found: Int32Array;
   private count = 0;
+  private nextBlockEnd: number;
 
   constructor(layout: MonitorLayout) {
     this.layout = layout;
+    this.nextBlockEnd = layout.skip + layout.block;
     this.once = lagPolynomial(layout.periods, 1);
     this.twice = lagPolynomial(layout.periods, 2);
     const span = layout.block + 2 * SPIKE_REACH;
@@ -58,8 +60,8 @@ export class BlockReader {
   /** Takes the next sample; true if it completes a block, whose reading then stands in `reading`. */
   feed(x: number): boolean {
     this.ring[this.count++ & this.mask] = x;
-    const { skip, block } = this.layout;
-    if (this.count < skip + block || (this.count - skip) % block !== 0) return false;
+    if (this.count < this.nextBlockEnd) return false;
+    this.nextBlockEnd += this.layout.block;
     this.read();
     return true;
   }

@@ -48,10 +48,7 @@ export function bestChange(
 }
 
 /** Sums from the start, so that the moments of any stretch cost nothing. Values are taken less `centre`. */
-export function momentSums(
-  values: Float64Array,
-  centre: number,
-): { first: Float64Array; second: Float64Array } {
+function momentSums(values: Float64Array, centre: number): { first: Float64Array; second: Float64Array } {
   const first = new Float64Array(values.length + 1);
   const second = new Float64Array(values.length + 1);
   for (let i = 0; i < values.length; i++) {

@@ -10,6 +10,8 @@ export class ExpandingReference {
   count = 0;
   private size = 0;
   private stride = 1;
+  /** Spread of the values kept; NaN until it is asked for again after a change. */
+  private knownSpread = Number.NaN;
   private readonly inTime: Float64Array;
   private readonly sorted: Float64Array;
 
@@ -31,6 +33,7 @@ export class ExpandingReference {
       at--;
     }
     this.sorted[at] = value;
+    this.knownSpread = Number.NaN;
   }
 
   /** Median of the values kept; NaN for none. */
@@ -42,6 +45,11 @@ export class ExpandingReference {
 
   /** Median absolute deviation about the median, times 1.4826; NaN for no value. */
   spread(): number {
+    if (Number.isNaN(this.knownSpread)) this.knownSpread = this.findSpread();
+    return this.knownSpread;
+  }
+
+  private findSpread(): number {
     const centre = this.median();
     // The deviations left and right of the median are two sorted lists: merge them up to the middle.
     let right = this.size >> 1;

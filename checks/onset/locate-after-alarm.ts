@@ -18,7 +18,7 @@ export interface RunHistory {
 }
 
 /** What the locator is told; periods and length as the monitors were told. */
-export interface LocateOptions {
+interface LocateOptions {
   readonly periodsSteps: readonly number[];
   readonly plannedSteps: number;
   /** All alarms so far, for the channels that agree. */

@@ -9,7 +9,7 @@ const BLOCKS_AFTER = 10;
 const VAGUE_BLOCKS = 3;
 
 /** What a whole history is judged with. */
-export interface OnsetOptions {
+interface OnsetOptions {
   readonly periodsSteps: readonly number[];
   readonly plannedSteps: number;
   readonly bounds?: Readonly<Record<string, ChannelBound>>;
@@ -17,7 +17,7 @@ export interface OnsetOptions {
 }
 
 /** The onset of a whole history, and what was noticed beside it. */
-export interface OnsetFinding {
+interface OnsetFinding {
   /** The first trouble that stops a run; else the first shift of a mean; null for a sound history. */
   readonly onset: Onset | null;
   readonly notes: readonly string[];
