@@ -8,7 +8,7 @@ const DF_MAX = 20;
  * Share of the allowed misses that is spent: records that stop as soon as they look good look better than they are, and
  * a wider interval buys protection against drift more cheaply than a second look does. Measured by simulation.
  */
-const MISSES_SPENT = 0.7;
+const MISSES_SPENT = 0.6;
 
 /** The mean of a stretch with its standard error and interval. */
 export interface MeanInterval {
@@ -30,7 +30,7 @@ export interface MeanInterval {
  * the cut, one of the level fitted jointly with the start-up to nearly the whole record.
  *
  *   se² = lrv/m, lrv of an autoregression fitted to the stretch; half-widths t_ν · se, ν = min(20, m/2 − 1),
- *   at a confidence of 1 − 0.7 (1 − confidence)
+ *   at a confidence of 1 − 0.6 (1 − confidence)
  *
  * Limits: coverage is measured by simulation, not proven, and falls below some 40 effective samples, which the judgement
  * therefore refuses. A stretch without variance gets half-width 0.
