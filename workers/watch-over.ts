@@ -1,11 +1,6 @@
-/** Bounds that the thread keeps an eye on, and how often. */
-export interface WatchOptions {
-  readonly memoryBytes: number;
-  readonly everyMs: number;
-}
-
 /**
- * What the watching thread runs. It is a thread since the main one may be busy with a step for minutes, and plain text
+ * What the watching thread of a child runs: it ends the process when its manager (`parent`) is gone or it uses more than
+ * `memoryBytes`, looking every `everyMs`. It is a thread since the main one may be busy with a step for minutes, and plain text
  * since a thread does not inherit the loader that runs TypeScript in tests.
  */
 export const WATCH_THREAD = `

@@ -26,8 +26,6 @@ export {
   type CheckpointPiece,
   type HistoryPiece,
   type LegOrder,
-  type LegRules,
-  legOrderSchema,
   toChildSchema,
 } from "./leg-order.ts";
 export {
@@ -35,7 +33,6 @@ export {
   type LegOutcome,
   type LegProgress,
   type LegReport,
-  legReportSchema,
 } from "./leg-report.ts";
 export type { LegEnding, LegRunner } from "./leg-runner.ts";
 export type {

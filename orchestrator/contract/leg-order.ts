@@ -27,7 +27,7 @@ const onsetSchema: z.ZodType<OnsetRule> = z.custom<OnsetRule>(
 );
 
 /** What one campaign asks of a run; counts are steps of the planned time step and scale with it under a remedy. */
-export const legRulesSchema = z.object({
+const legRulesSchema = z.object({
   accept: acceptSchema,
   onset: onsetSchema,
   dtSeconds: z.number().positive(),
@@ -36,7 +36,7 @@ export const legRulesSchema = z.object({
 });
 
 /** Manager to child: compute this stretch. Everything that the leg needs is in it or in the files it names. */
-export const legOrderSchema = z.object({
+const legOrderSchema = z.object({
   kind: z.literal("leg"),
   /** Unique for every try of every leg. */
   legId: z.string().regex(/^[A-Za-z0-9._-]+$/),
@@ -64,13 +64,11 @@ export const legOrderSchema = z.object({
 export type HistoryPiece = z.infer<typeof historyPieceSchema>;
 /** A saved state on disk. */
 export type CheckpointPiece = z.infer<typeof checkpointPieceSchema>;
-/** What one campaign asks of a run. */
-export type LegRules = z.infer<typeof legRulesSchema>;
 /** An order for one leg. */
 export type LegOrder = z.infer<typeof legOrderSchema>;
 
 /** Manager to child: checkpoint and report at the next step. */
-export const legStopSchema = z.object({ kind: z.literal("stop"), legId: z.string() });
+const legStopSchema = z.object({ kind: z.literal("stop"), legId: z.string() });
 
 /** Everything that a manager says to a child. */
 export const toChildSchema = z.discriminatedUnion("kind", [legOrderSchema, legStopSchema]);

@@ -4,7 +4,7 @@ import type { HistoryJudgement } from "./judgement.ts";
 import { checkpointPieceSchema, historyPieceSchema } from "./leg-order.ts";
 
 /** Why a leg stopped stepping. */
-export const LEG_OUTCOMES = [
+const LEG_OUTCOMES = [
   /** Its seconds were used up; the run goes on. */
   "budget",
   /** It was asked to stop; the run goes on some other time. */
@@ -28,7 +28,7 @@ const periods = z.custom<readonly DeclaredPeriod[]>((value) => Array.isArray(val
 const judgement = z.custom<HistoryJudgement>((value) => typeof value === "object" && value !== null);
 
 /** Child to manager: what the leg did, after its files are safely on disk. */
-export const legReportSchema = z.object({
+const legReportSchema = z.object({
   kind: z.literal("report"),
   legId: z.string(),
   outcome: z.enum(LEG_OUTCOMES),
@@ -61,7 +61,7 @@ export const legReportSchema = z.object({
 });
 
 /** Child to manager, a few times a second. */
-export const legProgressSchema = z.object({
+const legProgressSchema = z.object({
   kind: z.literal("progress"),
   legId: z.string(),
   step: z.int().min(0),
@@ -72,7 +72,7 @@ export const legProgressSchema = z.object({
 });
 
 /** Child to manager: ready for orders. */
-export const childReadySchema = z.object({ kind: z.literal("ready"), notice: z.string().nullable() });
+const childReadySchema = z.object({ kind: z.literal("ready"), notice: z.string().nullable() });
 
 /** Everything that a child says to its manager. */
 export const fromChildSchema = z.discriminatedUnion("kind", [

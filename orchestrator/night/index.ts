@@ -15,7 +15,6 @@ export type {
   NightOptions,
   NightSummary,
   RunName,
-  UncertaintyBudget,
 } from "./api.ts";
 export { campaignLoads } from "./loads.ts";
 export { nightIn, startNight } from "./start-night.ts";

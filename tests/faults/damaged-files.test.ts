@@ -6,7 +6,7 @@ import { readHistory } from "../../orchestrator/store/read-history.ts";
 import { writeHistoryFile } from "../../workers/history-file.ts";
 import { campaignPicture } from "../helpers/campaign-picture.ts";
 import { tempFolder } from "../helpers/temp-folder.ts";
-import { openQuietly, testPool, wholeNight } from "../helpers/test-night.ts";
+import { emptyFolders, openQuietly, testPool, wholeNight } from "../helpers/test-night.ts";
 import { steady, testPlan } from "../helpers/test-plan.ts";
 
 const plan = testPlan({
@@ -21,11 +21,12 @@ const plan = testPlan({
 
 describe("damage on the disk", () => {
   const temp = tempFolder();
+  const emptyFolder = emptyFolders(temp.path);
   let runner: LegRunner;
   let undisturbed: Awaited<ReturnType<typeof campaignPicture>>;
   beforeAll(async () => {
     runner = testPool();
-    const folder = await openQuietly(join(temp.path, "undisturbed"));
+    const folder = await openQuietly(await emptyFolder("undisturbed"));
     await wholeNight(folder, plan, runner);
     undisturbed = await campaignPicture(folder, "disk");
     await folder.close();
@@ -33,7 +34,7 @@ describe("damage on the disk", () => {
   afterAll(() => runner.close());
 
   it("of a history sets the run aside, names file and block, finishes the others, and goes on once it is restored", async () => {
-    const folder = await openQuietly(join(temp.path, "damaged"));
+    const folder = await openQuietly(await emptyFolder("damaged"));
     let stop = () => {};
     await wholeNight(folder, plan, runner, {
       legSeconds: 0.2,

@@ -6,7 +6,7 @@ import type { LegRunner } from "../../orchestrator/contract/index.ts";
 import { isDiskFull } from "../../orchestrator/store/disk-full.ts";
 import { campaignPicture } from "../helpers/campaign-picture.ts";
 import { tempFolder } from "../helpers/temp-folder.ts";
-import { openQuietly, testPool, wholeNight } from "../helpers/test-night.ts";
+import { emptyFolders, openQuietly, testPool, wholeNight } from "../helpers/test-night.ts";
 import { steady, testPlan } from "../helpers/test-plan.ts";
 
 const plan = testPlan({
@@ -19,11 +19,12 @@ const plan = testPlan({
   })),
 });
 const temp = tempFolder();
+const emptyFolder = emptyFolders(temp.path);
 
 describe("a disk that is nearly full", () => {
   it("pauses the night before a leg is begun", async () => {
     const runner = testPool();
-    const folder = await openQuietly(join(temp.path, "nearly"));
+    const folder = await openQuietly(await emptyFolder("nearly"));
     const { summary } = await wholeNight(folder, plan, runner, { reserveBytes: 2 ** 60 });
     expect(summary).toMatchObject({ endedBy: "disk-full", legs: 0 });
     expect((await folder.store.campaignState("disk")).standing).toBe("paused");
@@ -49,7 +50,7 @@ describe.runIf(canMount(temp.path))("a small disk that fills up", () => {
   let undisturbed: Awaited<ReturnType<typeof campaignPicture>>;
   beforeAll(async () => {
     runner = testPool();
-    const folder = await openQuietly(join(temp.path, "undisturbed"));
+    const folder = await openQuietly(await emptyFolder("undisturbed"));
     await wholeNight(folder, plan, runner);
     undisturbed = await campaignPicture(folder, "disk");
     await folder.close();

@@ -1,12 +1,11 @@
-import { cpSync } from "node:fs";
 import { join } from "node:path";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import type { LegRunner } from "../../orchestrator/contract/index.ts";
 import { campaignPicture, type RunPicture } from "../helpers/campaign-picture.ts";
-import { killNightAt } from "../helpers/kill-night.ts";
+import { killNightAt, sleepInNight } from "../helpers/kill-night.ts";
 import type { Place } from "../helpers/night-process.ts";
 import { tempFolder } from "../helpers/temp-folder.ts";
-import { openQuietly, testPool, wholeNight } from "../helpers/test-night.ts";
+import { emptyFolders, openQuietly, testPool, wholeNight } from "../helpers/test-night.ts";
 import { steady, testPlan } from "../helpers/test-plan.ts";
 
 const plan = testPlan({
@@ -29,29 +28,22 @@ const plan = testPlan({
   ],
 });
 
-describe("a server that is killed with SIGKILL", () => {
+describe("a server that is killed with SIGKILL, or", () => {
   const temp = tempFolder();
+  const emptyFolder = emptyFolders(temp.path);
   let undisturbed: RunPicture[];
   let runner: LegRunner;
   beforeAll(async () => {
-    // A fresh database takes seconds to make: one is made, the others are copies.
-    const empty = await openQuietly(join(temp.path, "empty"));
-    await empty.close();
     runner = testPool();
-    const folder = await openQuietly(copyOfEmpty("undisturbed"));
+    const folder = await openQuietly(await emptyFolder("undisturbed"));
     const { summary } = await wholeNight(folder, plan, runner);
     expect(summary.endedBy).toBe("all-done");
     undisturbed = await campaignPicture(folder, "kill");
     await folder.close();
     expect(undisturbed.map((run) => run.verdict)).toContain("accepted");
     expect(undisturbed.find((run) => run.label === "growing")?.attempt).toBe(2);
-  });
+  }, 180_000);
   afterAll(() => runner.close());
-  const copyOfEmpty = (name: string): string => {
-    const dir = join(temp.path, name);
-    cpSync(join(temp.path, "empty"), dir, { recursive: true });
-    return dir;
-  };
 
   const kills: [place: Place, time: number][] = [
     ["opening", 1],
@@ -66,7 +58,7 @@ describe("a server that is killed with SIGKILL", () => {
   it.each(kills)(
     "at %s, time %i: goes on to the same numbers, bit for bit",
     async (place, time) => {
-      const dir = copyOfEmpty(`${place}-${time}`);
+      const dir = await emptyFolder(`${place}-${time}`);
       const options = { dir, plan, legSeconds: 0.1, workers: 2 };
       const { orphanMs } = await killNightAt({ ...options, holdAt: { place, time } });
       expect(orphanMs).toBeLessThan(2000);
@@ -76,8 +68,18 @@ describe("a server that is killed with SIGKILL", () => {
       expect(await campaignPicture(folder, "kill")).toEqual(undisturbed);
       await folder.close();
     },
-    120_000,
+    180_000,
   );
+
+  it("that sleeps for longer than its locks in the queue last: comes to the same numbers", async () => {
+    const dir = await emptyFolder("asleep");
+    // Locks last 10 s.
+    const summary = await sleepInNight({ dir, plan, legSeconds: 0.1, workers: 2, holdAt: null }, 12_500);
+    expect(summary).toMatchObject({ endedBy: "all-done", done: 4 });
+    const folder = await openQuietly(dir);
+    expect(await campaignPicture(folder, "kill")).toEqual(undisturbed);
+    await folder.close();
+  }, 180_000);
 
   it("while the folder is made for the first time: it is made anew", async () => {
     const dir = join(temp.path, "never-whole");

@@ -1,4 +1,3 @@
-import { join } from "node:path";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import type { LegRunner, PlannedRun } from "../../orchestrator/contract/index.ts";
 import type { NightEvent } from "../../orchestrator/night/index.ts";
@@ -6,15 +5,16 @@ import type { DataFolder } from "../../orchestrator/store/data-folder.ts";
 import { campaignPicture } from "../helpers/campaign-picture.ts";
 import { childrenOf } from "../helpers/kill-night.ts";
 import { tempFolder } from "../helpers/temp-folder.ts";
-import { openQuietly, testPool, wholeNight } from "../helpers/test-night.ts";
+import { emptyFolders, openQuietly, testPool, wholeNight } from "../helpers/test-night.ts";
 import { steady, type TestRun, testPlan } from "../helpers/test-plan.ts";
 
 describe("legs that fail", () => {
   const temp = tempFolder();
+  const emptyFolder = emptyFolders(temp.path);
   let folder: DataFolder;
   let runner: LegRunner;
   beforeAll(async () => {
-    folder = await openQuietly(temp.path);
+    folder = await openQuietly(await emptyFolder("data"));
     runner = testPool(2, 256);
   });
   afterAll(async () => {
@@ -79,6 +79,7 @@ describe("legs that fail", () => {
 
 describe("legs that are disturbed from outside", () => {
   const temp = tempFolder();
+  const emptyFolder = emptyFolders(temp.path);
   let runner: LegRunner;
   const plan = testPlan({
     name: "disturbed",
@@ -92,7 +93,7 @@ describe("legs that are disturbed from outside", () => {
   let undisturbed: Awaited<ReturnType<typeof campaignPicture>>;
   beforeAll(async () => {
     runner = testPool();
-    const folder = await openQuietly(join(temp.path, "undisturbed"));
+    const folder = await openQuietly(await emptyFolder("undisturbed"));
     await wholeNight(folder, plan, runner);
     undisturbed = await campaignPicture(folder, "disturbed");
     await folder.close();
@@ -104,7 +105,7 @@ describe("legs that are disturbed from outside", () => {
     name: string,
     disturb: (folder: DataFolder, event: Extract<NightEvent, { kind: "progress" }>) => Promise<boolean>,
   ): Promise<{ disturbances: number; folder: DataFolder }> {
-    const folder = await openQuietly(join(temp.path, name));
+    const folder = await openQuietly(await emptyFolder(name));
     let disturbances = 0;
     const pending: Promise<void>[] = [];
     const { summary } = await wholeNight(folder, plan, runner, {

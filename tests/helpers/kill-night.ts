@@ -3,6 +3,7 @@ import { once } from "node:events";
 import { readFileSync } from "node:fs";
 import { createInterface } from "node:readline";
 import { fileURLToPath } from "node:url";
+import type { NightSummary } from "../../orchestrator/night/index.ts";
 import { processAlive } from "../../orchestrator/store/process-alive.ts";
 import type { NightProcessOptions } from "./night-process.ts";
 
@@ -22,6 +23,26 @@ export async function killNightAt(options: NightProcessOptions): Promise<{ orpha
     if (word.held === true) return kill(child);
   }
   throw new Error(`the night ended before it came to ${JSON.stringify(options.holdAt)}: ${complaint}`);
+}
+
+/**
+ * Starts a night in a process of its own, stops it with SIGSTOP in a leg and lets it go on after a while, as a computer does
+ * that sleeps; resolves with what the night came to.
+ */
+export async function sleepInNight(options: NightProcessOptions, sleepMs: number): Promise<NightSummary> {
+  const child = spawn(process.execPath, ["--import", "tsx", SCRIPT, JSON.stringify(options)], {
+    stdio: ["ignore", "pipe", "inherit"],
+  });
+  let slept = false;
+  for await (const line of createInterface(child.stdout!)) {
+    const word = JSON.parse(line) as { place: string; summary?: NightSummary };
+    if (word.summary !== undefined) return word.summary;
+    if (word.place !== "in-leg" || slept) continue;
+    slept = true;
+    child.kill("SIGSTOP");
+    setTimeout(() => child.kill("SIGCONT"), sleepMs);
+  }
+  throw new Error("the night ended without a word");
 }
 
 async function kill(child: ChildProcess): Promise<{ orphanMs: number }> {

@@ -1,3 +1,5 @@
+import { cpSync } from "node:fs";
+import { join } from "node:path";
 import { fileURLToPath } from "node:url";
 import type { LegRunner, Plan } from "../../orchestrator/contract/index.ts";
 import {
@@ -11,7 +13,7 @@ import { openDataFolder } from "../../orchestrator/store/open-data-folder.ts";
 import { createChildPool } from "../../workers/child-pool.ts";
 
 /** Path of the module with the solvers of the tests. */
-export const TEST_SOLVERS = fileURLToPath(new URL("./test-simulations.ts", import.meta.url));
+const TEST_SOLVERS = fileURLToPath(new URL("./test-simulations.ts", import.meta.url));
 
 /** Children that know the tests' solvers. */
 export function testPool(size = 2, memoryMegabytes = 512): LegRunner {
@@ -21,6 +23,26 @@ export function testPool(size = 2, memoryMegabytes = 512): LegRunner {
 /** Opens a folder without a word. */
 export function openQuietly(dir: string): Promise<DataFolder> {
   return openDataFolder(dir, { onNotice: () => undefined, now: Date.now });
+}
+
+/**
+ * Copies of an empty data folder: a fresh database takes seconds to make, so that one is made and the others are copies.
+ *
+ * @param path folder of the test file, in which the copies lie
+ */
+export function emptyFolders(path: string): (name: string) => Promise<string> {
+  let made: Promise<string> | null = null;
+  const make = async (): Promise<string> => {
+    const template = join(path, "empty-template");
+    await (await openQuietly(template)).close();
+    return template;
+  };
+  return async (name) => {
+    made ??= make();
+    const dir = join(path, name);
+    cpSync(await made, dir, { recursive: true });
+    return dir;
+  };
 }
 
 /** What a night came to, and what was to be seen of it. */

@@ -6,15 +6,16 @@ import { campaignLoads, type NightEvent } from "../../orchestrator/night/index.t
 import type { DataFolder } from "../../orchestrator/store/data-folder.ts";
 import { campaignPicture } from "../helpers/campaign-picture.ts";
 import { tempFolder } from "../helpers/temp-folder.ts";
-import { openQuietly, testPool, wholeNight } from "../helpers/test-night.ts";
+import { emptyFolders, openQuietly, testPool, wholeNight } from "../helpers/test-night.ts";
 import { steady, type TestRun, testPlan } from "../helpers/test-plan.ts";
 
 describe("a night of small processes", () => {
   const temp = tempFolder();
+  const emptyFolder = emptyFolders(temp.path);
   let folder: DataFolder;
   let runner: LegRunner;
   beforeAll(async () => {
-    folder = await openQuietly(temp.path);
+    folder = await openQuietly(await emptyFolder("data"));
     runner = testPool();
   });
   afterAll(async () => {
@@ -74,7 +75,7 @@ describe("a night of small processes", () => {
     const [first] = await campaignPicture(folder, "small");
     expect(shared!.steps).toBeLessThan(first!.steps);
 
-    const own = await openQuietly(join(temp.path, "own"));
+    const own = await openQuietly(await emptyFolder("own"));
     await wholeNight(own, looser, runner);
     const [fresh] = await campaignPicture(own, "looser");
     await own.close();
@@ -116,7 +117,7 @@ describe("a night of small processes", () => {
     expect(Math.max(...state.list.map((run) => run.steps))).toBeGreaterThanOrEqual(100);
     expect((await wholeNight(folder, slow, runner)).summary.endedBy).toBe("all-done");
 
-    const other = await openQuietly(join(temp.path, "undisturbed"));
+    const other = await openQuietly(await emptyFolder("undisturbed"));
     await wholeNight(other, slow, runner);
     expect(await campaignPicture(folder, "interrupted")).toEqual(await campaignPicture(other, "interrupted"));
     await other.close();
@@ -204,9 +205,9 @@ describe("a night of small processes", () => {
 
   it("leaves no file behind that the store does not know", async () => {
     const known = await folder.store.files();
-    const found = readdirSync(join(temp.path, "runs"), { withFileTypes: true, recursive: true })
+    const found = readdirSync(join(folder.dir, "runs"), { withFileTypes: true, recursive: true })
       .filter((entry) => entry.isFile())
-      .map((entry) => join(entry.parentPath, entry.name).slice(temp.path.length + 1));
+      .map((entry) => join(entry.parentPath, entry.name).slice(folder.dir.length + 1));
     expect(found.sort()).toEqual([...known].sort());
   });
 
