@@ -74,7 +74,10 @@ export const wingWakeCapacity = (inputs: Case, times: Timing): number =>
  */
 export function createState(inputs: Case, path: FlightPath = flightPath(inputs)): ModelState {
   const times = timing(inputs);
-  const geometry = wingGeometry(inputs.wing, clustersOf(inputs));
+  const geometry = wingGeometry(inputs.wing, {
+    clusters: clustersOf(inputs),
+    wayPerStep: times.referenceSpeed * times.dtSeconds,
+  });
   const { cores } = inputs.numerics;
   const chord = geometry.planform.meanChordM;
   const coreLength = (radius: number) => CORE_LENGTH_PER_RADIUS * cores.rotor_core_radii * radius;

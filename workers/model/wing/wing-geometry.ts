@@ -4,7 +4,7 @@ import { type CamberLine, camberLine } from "./camber-line.ts";
 import { type Planform, planform } from "./planform.ts";
 import { type Cluster, stripEdges } from "./strip-edges.ts";
 
-/** Part of the last ring that lies on the wing: it begins at the quarter of the last panel and ends a quarter behind it. */
+/** Part of a panel behind its ring's leading edge; of the last ring only that lies on the wing. */
 export const LAST_RING_ON_WING = 0.75;
 
 /** Vectors as three arrays of components. */
@@ -33,7 +33,7 @@ export interface WingGeometry {
   readonly edges: Float64Array;
   /** Area of each strip, m². */
   readonly stripAreas: Float64Array;
-  /** Ring corners, shape [(chordwise + 1) * (strips + 1)]: quarters of the panels, and a quarter behind the trailing edge. */
+  /** Ring corners, shape [(chordwise + 1) * (strips + 1)]: quarters of the panels, and the gap behind the trailing edge. */
   readonly nodes: VectorArray;
   /**
    * Where velocities are wanted: control points of the panels, then middles of the spanwise segments (leading edges of the
@@ -60,20 +60,29 @@ type Surface = (at: number, xi: number) => Vec3;
 /**
  * Lays out the wing of a case.
  *
- * @param clusters where strips cluster besides the tips
+ * The last ring ends a quarter of a panel, or of the way flown in a step where that is less, behind the trailing edge: there
+ * the shed vortex stands for what is shed during a step.
+ *
+ * @param options clusters: where strips cluster besides the tips; wayPerStep: way flown in a step, m
  */
-export function wingGeometry(wing: Case["wing"], clusters: readonly Cluster[]): WingGeometry {
+export function wingGeometry(
+  wing: Case["wing"],
+  options: { readonly clusters: readonly Cluster[]; readonly wayPerStep: number },
+): WingGeometry {
   const form = planform(wing);
   const line = camberLine(wing.camber_percent, wing.camber_position_percent);
   const pitch = radians(wing.pitch_deg);
   const surface = surfaceOf(form, line, pitch);
   const chordwise = wing.chordwise_panels;
   const strips = wing.spanwise_panels;
-  const edges = stripEdges(wing.span_m, strips, clusters);
-  const frame = { chordwise, strips, edges };
+  const edges = stripEdges(wing.span_m, strips, options.clusters);
+  const gap = 0.25 * Math.min(1, (options.wayPerStep * chordwise) / form.meanChordM);
+  const frame = { chordwise, strips, edges, gap };
   return {
     planform: form,
-    ...frame,
+    chordwise,
+    strips,
+    edges,
     ...latticeOf(frame, surface),
     ...panelsOf(frame, surface, form, line, pitch),
     chordForward: [Math.cos(pitch), 0, Math.sin(pitch)],
@@ -95,19 +104,21 @@ function surfaceOf(form: Planform, line: CamberLine, pitch: number): Surface {
   };
 }
 
-type Frame = Pick<WingGeometry, "chordwise" | "strips" | "edges">;
+/** `gap`: end of the last ring behind the trailing edge, in panels. */
+type Frame = Pick<WingGeometry, "chordwise" | "strips" | "edges"> & { readonly gap: number };
 
-function latticeOf({ chordwise, strips, edges }: Frame, surface: Surface) {
+function latticeOf({ chordwise, strips, edges, gap }: Frame, surface: Surface) {
   const nodes = vectorArray((chordwise + 1) * (strips + 1));
   const points = vectorArray(2 * chordwise * strips + chordwise * (strips + 1));
   const spanwiseLengths = vectorArray(chordwise * strips);
   const chordwiseLengths = vectorArray(chordwise * (strips + 1));
-  const node = (k: number, j: number): Vec3 => surface(edges[j]!, (k + 0.25) / chordwise);
+  const node = (k: number, j: number): Vec3 =>
+    surface(edges[j]!, (k === chordwise ? k + gap : k + 0.25) / chordwise);
   for (let k = 0; k <= chordwise; k++) {
     for (let j = 0; j <= strips; j++) {
       put(nodes, k * (strips + 1) + j, node(k, j));
       if (k === chordwise) continue;
-      const part = k === chordwise - 1 ? LAST_RING_ON_WING : 1;
+      const part = k === chordwise - 1 ? LAST_RING_ON_WING / (LAST_RING_ON_WING + gap) : 1;
       const length = scaled(addScaled(node(k + 1, j), node(k, j), -1), part);
       put(chordwiseLengths, k * (strips + 1) + j, length);
       put(points, 2 * chordwise * strips + k * (strips + 1) + j, addScaled(node(k, j), length, 0.5));
