@@ -17,10 +17,13 @@ export function runTable(rows: readonly LoadRow[], style: TableStyle): string {
   const several = new Set(rows.map((row) => row.campaign)).size > 1;
   const axes = [...new Set(rows.flatMap((row) => Object.keys(row.varied)))];
   const channels = [...new Set(rows.map((row) => row.channel))];
+  // Beside a sweep stand runs that its axes do not name: baselines, companions, single cases.
+  const named = axes.length > 0 && rows.some((row) => row.role !== "sweep");
   const head = [
     ...(several ? ["campaign"] : []),
     "run",
     ...(axes.length > 0 ? axes : ["label"]),
+    ...(named ? ["case"] : []),
     "verdict",
     ...channels,
     "window",
@@ -33,6 +36,7 @@ export function runTable(rows: readonly LoadRow[], style: TableStyle): string {
       ...(several ? [first.campaign] : []),
       String(first.number),
       ...(axes.length > 0 ? varied : [first.label]),
+      ...(named ? [first.role === "sweep" ? "" : first.label] : []),
       first.runVerdict ?? "not done",
       ...channels.map((name) => valueText(run.find((row) => row.channel === name))),
       windowText(run),
@@ -102,12 +106,17 @@ function valueText(row: LoadRow | undefined): string {
 
 function windowText(run: readonly LoadRow[]): string {
   const windows = run.flatMap(({ channel, window }) =>
-    window === null ? [] : [{ channel, text: `${sixDigits(window.fromTime)}–${sixDigits(window.toTime)} s` }],
+    window === null
+      ? []
+      : [{ channel, text: `${fourDigits(window.fromTime)}–${fourDigits(window.toTime)} s` }],
   );
   const texts = new Set(windows.map(({ text }) => text));
   if (texts.size <= 1) return windows[0]?.text ?? "–";
   return windows.map(({ channel, text }) => `${channel} ${text}`).join(", ");
 }
+
+/** Enough to find a window in a plot; exports have all digits. */
+const fourDigits = (seconds: number): string => sixDigits(Number(seconds.toPrecision(4)));
 
 function remarks(run: readonly LoadRow[]): string {
   const first = run[0]!;

@@ -47,6 +47,18 @@ describe("the table of runs", () => {
     expect(table).toContain("remedy larger core: blurs tip vortices; variance-changed");
   });
 
+  it("names the runs that stand beside the sweep", () => {
+    const lines = runTable(
+      [loadRow(), loadRow({ runId: "b", number: 9, role: "baseline", label: "rotors off" })],
+      {
+        width: null,
+      },
+    ).split("\n");
+    expect(lines[0]).toMatch(/blades +case +verdict/);
+    expect(lines[1]).toMatch(/^1 +3.5 +3 +accepted/);
+    expect(lines[2]).toMatch(/^9 .*rotors off +accepted/);
+  });
+
   it("uses the label where nothing was varied, and says what is not done", () => {
     const waiting = loadRow({
       varied: {},
