@@ -37,7 +37,11 @@ export class AppError extends Error {
   readonly where: string | undefined;
   readonly fix: string | undefined;
 
-  constructor(code: ErrorCode, what: string, options: { where?: string; fix?: string; cause?: unknown } = {}) {
+  constructor(
+    code: ErrorCode,
+    what: string,
+    options: { where?: string; fix?: string; cause?: unknown } = {},
+  ) {
     super(what, options.cause === undefined ? undefined : { cause: options.cause });
     this.name = "AppError";
     this.code = code;

@@ -50,17 +50,15 @@ export interface ChannelJudgement {
   readonly words: string;
 }
 
-export const ONSET_KINDS = [
-  "blow-up",
-  "growing-oscillation",
-  "wake-breakdown",
-  "mean-shift",
-  "spike-cluster",
-  "non-finite",
-  "no-stable-baseline",
-] as const;
-
-export type OnsetKind = (typeof ONSET_KINDS)[number];
+/** How a history goes wrong; see the glossary of the checks for what each looks like. */
+export type OnsetKind =
+  | "blow-up"
+  | "growing-oscillation"
+  | "wake-breakdown"
+  | "mean-shift"
+  | "spike-cluster"
+  | "non-finite"
+  | "no-stable-baseline";
 
 /** Where and how a history goes wrong. `no-stable-baseline` names no place: its index, time and band are null. */
 export interface Onset {

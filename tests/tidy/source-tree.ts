@@ -1,5 +1,5 @@
 import { readdirSync, readFileSync } from "node:fs";
-import { dirname, join, posix, relative } from "node:path";
+import { dirname, join, posix } from "node:path";
 import { fileURLToPath } from "node:url";
 import { ROOTS } from "./import-zones.ts";
 
@@ -48,6 +48,3 @@ export function importsOf(file: string): ImportEdge[] {
   }
   return edges;
 }
-
-/** Path of a file relative to the project. */
-export const projectPath = (path: string): string => relative(projectRoot, path).split("\\").join("/");
