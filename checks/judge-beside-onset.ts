@@ -37,7 +37,7 @@ export function judgeBesideOnset(
 }
 
 function unstable(judged: ChannelJudgement, onset: Onset): ChannelJudgement {
-  const before = judged.mean === null ? "" : `, and what precedes it will not do (${judged.words})`;
+  const before = onset.index === null ? "" : `, and what precedes it will not do (${judged.words})`;
   return {
     ...judged,
     verdict: "unstable",
