@@ -35,6 +35,10 @@ async function compute(order: LegOrder, solvers: SolverTable): Promise<void> {
   const report = await runLeg(order, {
     solvers,
     clock: () => performance.now(),
+    cpuClock: () => {
+      const { user, system } = process.cpuUsage();
+      return (user + system) / 1000;
+    },
     breathe: () => nextTurn(),
     stopAsked: () => stopAsked,
     onProgress: say,

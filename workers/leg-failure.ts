@@ -25,6 +25,7 @@ export function legFailure(order: LegOrder, error: unknown): LegReport {
     stopStep: order.judgedSteps,
     judgedSteps: order.judgedSteps,
     seconds: 0,
+    cpuSeconds: 0,
     stepsDone: 0,
     history: null,
     checkpoint: null,

@@ -23,6 +23,8 @@ export interface LegSurroundings {
   readonly solvers: SolverTable;
   /** Milliseconds of a clock that never goes back. */
   readonly clock: () => number;
+  /** Milliseconds of processor time that this process has used. */
+  readonly cpuClock: () => number;
   /** Lets messages in. */
   readonly breathe: () => Promise<void>;
   /** Whether somebody asked for the leg to end at the next step. */
@@ -45,6 +47,7 @@ interface Leg {
   readonly stored: number;
   judgedSteps: number;
   seconds: number;
+  cpuSeconds: number;
 }
 
 /** Why the leg stops, with what was found. */
@@ -65,7 +68,7 @@ export async function runLeg(order: LegOrder, around: LegSurroundings): Promise<
     const keep = (finding: Finding | null): void => {
       last = finding?.judgement ?? last;
     };
-    const stop = replay(leg, keep) ?? (await stepOn(leg, around, keep));
+    const stop = replay(leg, keep) ?? (await timed(leg, around, () => stepOn(leg, around, keep)));
     keep(stop.finding);
     return writeDown(leg, stop, last);
   } catch (error) {
@@ -106,6 +109,7 @@ function takeUp(order: LegOrder, solvers: SolverTable): Leg {
     stored: record.length,
     judgedSteps: 0,
     seconds: 0,
+    cpuSeconds: 0,
   };
 }
 
@@ -138,6 +142,13 @@ function replay(leg: Leg, keep: (finding: Finding) => void): Stop | null {
   leg.judgedSteps = record.length;
   if (order.endedBecause === null) return null;
   return { outcome: "failed", message: order.endedBecause, finding: null };
+}
+
+async function timed<T>(leg: Leg, around: LegSurroundings, work: () => Promise<T>): Promise<T> {
+  const before = around.cpuClock();
+  const value = await work();
+  leg.cpuSeconds = (around.cpuClock() - before) / 1000;
+  return value;
 }
 
 async function stepOn(leg: Leg, around: LegSurroundings, keep: (finding: Finding) => void): Promise<Stop> {
@@ -245,6 +256,7 @@ function writeDown(leg: Leg, stop: Stop, judgement: HistoryJudgement | null): Le
     stopStep: leg.judgedSteps,
     judgedSteps: leg.judgedSteps,
     seconds: leg.seconds,
+    cpuSeconds: leg.cpuSeconds,
     stepsDone: record.length - leg.stored,
     history,
     checkpoint,

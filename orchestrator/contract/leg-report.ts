@@ -51,8 +51,9 @@ const legReportSchema = z.object({
   stopStep: z.int().min(0),
   /** Steps up to which the record is judged now. */
   judgedSteps: z.int().min(0),
-  /** Seconds spent stepping, and steps done in them. */
+  /** Seconds that the stepping took by the clock, seconds of processor time in them, and steps done. */
   seconds: z.number().min(0),
+  cpuSeconds: z.number().min(0),
   stepsDone: z.int().min(0),
   history: historyPieceSchema.extend({ bytes: z.int().min(0) }).nullable(),
   checkpoint: checkpointPieceSchema.nullable(),

@@ -41,9 +41,9 @@ export interface NightSummary {
   readonly done: number;
   readonly verdicts: Readonly<Partial<Record<Verdict, number>>>;
   readonly legs: number;
-  /** Core seconds of stepping in this night. */
+  /** Seconds of processor time spent stepping in this night. */
   readonly computeSeconds: number;
-  /** Core seconds that runs ended before their longest run would still have taken, at the speed they had. */
+  /** Seconds of processor time that runs ended before their longest run would still have taken, at the speed they had. */
   readonly savedSeconds: number;
 }
 

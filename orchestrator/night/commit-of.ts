@@ -15,7 +15,7 @@ export function commitOfReport(claim: LegClaim, report: LegReport, plan: Plan, n
   return {
     ...base(claim, nowMs, next),
     outcome: report.outcome,
-    seconds: report.seconds,
+    seconds: report.cpuSeconds,
     computed: known
       ? {
           history: report.history,

@@ -7,9 +7,11 @@ interface Entry {
   run: CampaignRun;
   /** How far the leg is that is being computed. */
   live: LegProgress | null;
-  /** Steps and seconds of the current attempt that were committed in this night. */
-  measured: { steps: number; seconds: number };
+  /** Steps and seconds of the current attempt that were committed in this night, by the clock and of processor time. */
+  measured: { steps: number; seconds: number; cpuSeconds: number };
 }
+
+const NOTHING: Entry["measured"] = { steps: 0, seconds: 0, cpuSeconds: 0 };
 
 /** What the night knows of its runs while it goes on; the store has the last word. */
 export class NightLedger {
@@ -23,9 +25,7 @@ export class NightLedger {
 
   constructor(plan: Plan, list: readonly CampaignRun[]) {
     this.#plan = plan;
-    this.#entries = new Map(
-      list.map((run) => [run.runId, { run, live: null, measured: { steps: 0, seconds: 0 } }]),
-    );
+    this.#entries = new Map(list.map((run) => [run.runId, { run, live: null, measured: { ...NOTHING } }]));
     this.#done = list.filter((run) => run.state === "done").length;
   }
 
@@ -42,12 +42,12 @@ export class NightLedger {
     return this.#legs;
   }
 
-  /** Seconds of stepping committed since the night began. */
+  /** Seconds of processor time committed since the night began. */
   get computeSeconds(): number {
     return this.#computeSeconds;
   }
 
-  /** Seconds that runs ended early since the night began would still have taken to their longest. */
+  /** Seconds of processor time that runs ended early since the night began would still have taken to their longest. */
   get savedSeconds(): number {
     return this.#savedSeconds;
   }
@@ -70,21 +70,27 @@ export class NightLedger {
   }
 
   /** Takes note of a leg that was committed, and of how the run stands after it. */
-  committed(run: CampaignRun, leg: { readonly steps: number; readonly seconds: number }): void {
+  committed(run: CampaignRun, leg: Readonly<Entry["measured"]>): void {
     const entry = this.#entry(run.runId);
     this.#legs += 1;
-    this.#computeSeconds += leg.seconds;
+    this.#computeSeconds += leg.cpuSeconds;
     if (leg.steps > 0) {
       this.#predicted.measuredSeconds += leg.seconds;
       this.#predicted.predictedSeconds += leg.steps * predictedPerStep(run);
     }
-    const before = run.attempt === entry.run.attempt ? entry.measured : { steps: 0, seconds: 0 };
-    entry.measured = { steps: before.steps + leg.steps, seconds: before.seconds + leg.seconds };
+    const before = run.attempt === entry.run.attempt ? entry.measured : NOTHING;
+    entry.measured = {
+      steps: before.steps + leg.steps,
+      seconds: before.seconds + leg.seconds,
+      cpuSeconds: before.cpuSeconds + leg.cpuSeconds,
+    };
     entry.run = run;
     entry.live = null;
     if (run.state !== "done") return;
     this.#done += 1;
-    if (run.verdict !== "failed") this.#savedSeconds += this.secondsLeft(run.runId);
+    const { steps, cpuSeconds } = entry.measured;
+    if (run.verdict !== "failed" && steps > 0)
+      this.#savedSeconds += (Math.max(0, run.longestSteps - run.steps) * cpuSeconds) / steps;
   }
 
   /** Seconds until a run reaches its longest, at the speed measured. */

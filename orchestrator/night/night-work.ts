@@ -184,8 +184,9 @@ export class NightWork {
     });
     this.#ledger.live(runId, null);
     const commit = await this.#commitOf(claim, ending);
+    const seconds = ending.kind === "reported" ? ending.report.seconds : 0;
     if (this.#aside.has(runId)) return null;
-    const committed = commit === null ? null : await this.#commit(claim, commit);
+    const committed = commit === null ? null : await this.#commit(claim, commit, seconds);
     if (this.#end !== null) return null;
     // A leg that came to nothing is repeated from the last checkpoint, as the store has it now.
     const run = committed ?? (await folder.store.campaignRun(campaign, runId));
@@ -216,7 +217,7 @@ export class NightWork {
   }
 
   /** Writes a leg and tells what came of it; null when somebody else has claimed the attempt since. */
-  async #commit(claim: LegClaim, commit: LegCommit): Promise<CampaignRun | null> {
+  async #commit(claim: LegClaim, commit: LegCommit, seconds: number): Promise<CampaignRun | null> {
     const { folder, onEvent } = this.#options;
     const { history, checkpoint } = commit.computed ?? { history: null, checkpoint: null };
     if ((await folder.store.commit(commit)) === "stale") {
@@ -226,7 +227,7 @@ export class NightWork {
     if (checkpoint !== null) this.#remove(claim.checkpoint?.file);
     const run = await folder.store.campaignRun(claim.campaign, claim.run.runId);
     const steps = (commit.computed?.steps ?? claim.attemptSteps) - claim.attemptSteps;
-    this.#ledger.committed(run, { steps, seconds: commit.seconds });
+    this.#ledger.committed(run, { steps, seconds, cpuSeconds: commit.seconds });
     const { next } = commit;
     if (next.kind === "next-attempt")
       onEvent({

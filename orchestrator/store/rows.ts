@@ -66,7 +66,7 @@ export interface CampaignRun {
   readonly longestSteps: number;
   /** Legs committed for this campaign. */
   readonly legs: number;
-  /** Seconds of stepping spent for this campaign on this run, all attempts together. */
+  /** Seconds of processor time spent for this campaign on this run, all attempts together. */
   readonly seconds: number;
   readonly channels: readonly ChannelInfo[];
   readonly dtSeconds: number;

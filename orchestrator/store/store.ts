@@ -99,6 +99,7 @@ export interface LegCommit {
   readonly nowMs: number;
   readonly outcome: string;
   readonly fromStep: number;
+  /** Seconds of processor time. */
   readonly seconds: number;
   /** What became of the attempt; null where the leg left it as it was. */
   readonly computed: {
