@@ -11,7 +11,7 @@ const LATE = 6;
 const PAST_MIN = 8;
 /** Least size of a shift in standard errors of its own window, and in standard deviations of past differences. */
 const LOCAL_MIN = 5;
-const PAST_RATIO_MIN = 7;
+const PAST_RATIO_MIN = 8;
 /** A shift jumps at once and stays: largest drift of the plateau, least jump across the gap. */
 const DRIFT_MAX = 0.35;
 const JUMP_MIN = 0.7;
@@ -27,13 +27,13 @@ export interface MeanShiftFound {
 /**
  * Finds a step of the mean: least squares over 8 blocks, a gap of 1, and 4 blocks, with a common slope.
  *
- *   M_j = a + b·j + D·[j after the gap],  T = |D|/(se(D)·(1 + 4/9)) > 5,  |D| > 7·(median of past |D|)/0.6745
+ *   M_j = a + b·j + D·[j after the gap],  T = |D|/(se(D)·(1 + 4/9)) > 5,  |D| > 8·(median of past |D|)/0.6745
  *
  * The second condition holds D against what slow noise made of it so far: the standard error of one window knows
  * nothing of correlation between blocks. The drift over the plateau and the jump across the gap tell a step from
  * a ramp.
  *
- * Limits: a step within noise of long memory needs to be seven times what that noise does on its own in a window; one
+ * Limits: a step within noise of long memory needs to be eight times what that noise does on its own in a window; one
  * in the first 25 blocks past the start goes unnoticed.
  */
 export class MeanShift {

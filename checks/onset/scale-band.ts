@@ -8,6 +8,9 @@ const SPREAD_MIN = 0.1;
 const ALLOWANCE_MAX = 1;
 const LONG_REFERENCE_BLOCKS = 40;
 
+/** A spread from n blocks is itself uncertain, and reads low in a lull: it is raised by 5/n of itself. */
+const SHORT_REFERENCE = 5;
+
 /** Settings of one band. */
 export interface ScaleBandSettings {
   /** Least rise of the log scale over its reference that counts, e-folds. */
@@ -23,7 +26,7 @@ export interface ScaleBandSettings {
  * Watches the log scale of a quantity, block by block, for a lasting rise over its own past.
  *
  *   C = max(0, C + clip(y − m − k, −1, 1)),  alarm at C > threshold
- *   m = median, s = max(0.10, 1.4826·MAD) of a reference that lags a few blocks behind
+ *   m = median, s = max(0.10, 1.4826·MAD·(1 + 5/n)) of a reference of n blocks that lags a few behind
  *   k = max(k_min, 2s), at most 1 once the reference has 40 blocks
  *
  * The lag keeps a growth out of its own reference; the clip makes an alarm take several blocks whatever one of them
@@ -78,8 +81,9 @@ export class ScaleBand {
   private limit(): number {
     const { allowanceMin, sensitivity } = this.settings;
     const middle = this.reference.median();
-    const spread = Math.max(SPREAD_MIN, this.reference.spread());
-    const longEnough = this.reference.count >= LONG_REFERENCE_BLOCKS;
+    const { count } = this.reference;
+    const spread = Math.max(SPREAD_MIN, this.reference.spread() * (1 + SHORT_REFERENCE / count));
+    const longEnough = count >= LONG_REFERENCE_BLOCKS;
     const wide = longEnough ? Math.min(ALLOWANCE_MAX, 2 * spread) : 2 * spread;
     const allowance = Math.max(allowanceMin, wide * sensitivity);
     return middle + Math.min(allowance, this.quiet.allowanceOver(middle, sensitivity));

@@ -68,20 +68,20 @@ export const LOOK_ALIKES: Readonly<Record<string, (draw: Draw) => OnsetScenario>
       { periods: draw.uniform() < 0.5 ? [k] : [] },
     );
   },
-  beats: (draw) => {
-    const one = draw.between(12, 50);
-    const other = one * draw.between(1.03, 1.3);
-    return sound(
+  // A beat that the run shows less than three times cannot be told from a growth while it rises for the first time.
+  beats: (draw) =>
+    sound(
       draw,
       (x, sd) => {
+        const one = draw.between(12, 50);
+        const other = 1 / (1 / one - 1 / draw.logBetween(3 * one, x.length / 3));
         const size = sd * draw.between(1, 10);
         for (let t = 0; t < x.length; t++) {
           x[t] = x[t]! + size * (Math.sin((2 * Math.PI * t) / one) + Math.sin((2 * Math.PI * t) / other));
         }
       },
       { periods: [] },
-    );
-  },
+    ),
   "change along a loop": (draw) =>
     sound(draw, (x, _, level) => {
       const loop = x.length / draw.between(2.5, 12);
