@@ -1,3 +1,6 @@
+// What is remembered. PostgreSQL in the process (PGlite) behind a pool that node-postgres could replace; SQL is in this
+// folder alone, and names its schema. Not here: the queue (../queue/) and what follows from what is stored (../night/).
+// Read this file first, then schema-0001.ts and commit-leg.ts; open-data-folder.ts puts the parts together.
 import type {
   ChannelInfo,
   CheckpointPiece,
