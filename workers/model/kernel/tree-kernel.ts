@@ -134,7 +134,7 @@ function induceByTree(
   const stride = size * 8;
   const edges = nodes + stride * 4;
   const records = nodes + stride * 6;
-  const cells = records + (size + 1) * RECORD_BYTES;
+  const cells = records + size * RECORD_BYTES;
   const most = 2 * Math.ceil(size / 5) + 3;
   const drafts = cells + most * CELL_BYTES;
   memory.reserve(drafts + most * DRAFT_BYTES);

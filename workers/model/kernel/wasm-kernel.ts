@@ -38,7 +38,7 @@ interface KernelExports {
   readonly induceMixed: Induce;
 }
 
-/** Bytes of scratch that the lanes ask for, besides one vector a column. */
+/** Bytes of scratch that the lanes ask for, besides five vectors a column. */
 const SCRATCH = 240;
 
 /** Name of the mixed-precision arithmetic. */
@@ -77,9 +77,9 @@ export function wasmKernel(bytes: Uint8Array, variant: KernelVariant): PairKerne
       for (const lattice of lattices) {
         const { rows, cols } = lattice;
         at.stride = rows * cols * 8;
-        at.nodes = at.scratch + SCRATCH + cols * 16;
+        at.nodes = at.scratch + SCRATCH + cols * 80;
         at.records = at.nodes + at.stride * 6;
-        memory.reserve(at.records + (rows * cols + 1) * record);
+        memory.reserve(at.records + rows * cols * record);
         copyLattice(memory, lattice, at.nodes / 8, rows * cols);
         const edges = at.nodes + at.stride * 4;
         const bad = pack(rows, cols, at.nodes, at.stride, edges, edges + at.stride, at.records);

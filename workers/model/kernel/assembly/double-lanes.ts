@@ -8,10 +8,13 @@ const CORE: usize = 24;
 const SPANWISE: usize = 32;
 const STREAMWISE: usize = 80;
 
-/** Scratch: totals u, v, w, points x, y, z, row sums u, v, w (16 bytes each), one vector a column. */
+/** Scratch, a vector each: totals u, v, w, points x, y, z, row sums u, v, w; then as in mixed-lanes.ts. */
 const POINTS: usize = 48;
 const SUMS: usize = 96;
 const FAR: usize = 144;
+
+/** Bytes of a place: r and R. */
+const PLACE: usize = 64;
 
 /** p - x of one coordinate for two points. */
 function difference(point: usize, node: usize): v128 {
@@ -58,39 +61,37 @@ function closeRow(totals: usize, sum: usize): void {
   }
 }
 
-/** Totals of the nodes from `node` to `last` at two points; reads, and makes nothing of, one record past the last. */
-function sweep(node: usize, last: usize, scratch: usize, end: usize): void {
-  const p = scratch + POINTS;
+/** Takes the points from the nodes of a row: for each node, r and R are written to `places`. */
+function place(node: usize, places: usize, end: usize, p: usize): void {
+  for (; places < end; places += PLACE, node += RECORD) {
+    const rx = difference(p, node);
+    const ry = difference(p + 16, node + 8);
+    const rz = difference(p + 32, node + 16);
+    v128.store(places, rx);
+    v128.store(places, ry, 16);
+    v128.store(places, rz, 32);
+    v128.store(places, distance(rx, ry, rz, node), 48);
+  }
+}
+
+/** Totals of the nodes from `node` to `last` at two points; column 0 has a spanwise edge of zero strength. */
+function sweep(node: usize, last: usize, cols: i32, scratch: usize): void {
   const sum = scratch + SUMS;
-  let rx = difference(p, node);
-  let ry = difference(p + 16, node + 8);
-  let rz = difference(p + 32, node + 16);
-  let near = distance(rx, ry, rz, node);
+  const places = scratch + FAR + <usize>cols * 16;
+  const end = places + <usize>cols * PLACE;
   while (node < last) {
-    let at = scratch + FAR;
-    addEdge(sum, node + STREAMWISE, factor(node + STREAMWISE, v128.load(at), near), rx, ry, rz);
-    v128.store(at, near);
-    node += RECORD;
-    let left = near;
-    rx = difference(p, node);
-    ry = difference(p + 16, node + 8);
-    rz = difference(p + 32, node + 16);
-    near = distance(rx, ry, rz, node);
-    for (at += 16; at < end; at += 16) {
-      const next = node + RECORD;
-      const nextX = difference(p, next);
-      const nextY = difference(p + 16, next + 8);
-      const nextZ = difference(p + 32, next + 16);
-      const nextNear = distance(nextX, nextY, nextZ, next);
+    place(node, places, end, scratch + POINTS);
+    let left = f64x2.splat(1);
+    let far = scratch + FAR;
+    for (let at = places; at < end; at += PLACE, far += 16, node += RECORD) {
+      const rx = v128.load(at);
+      const ry = v128.load(at, 16);
+      const rz = v128.load(at, 32);
+      const near = v128.load(at, 48);
       addEdge(sum, node + SPANWISE, factor(node + SPANWISE, left, near), rx, ry, rz);
-      addEdge(sum, node + STREAMWISE, factor(node + STREAMWISE, v128.load(at), near), rx, ry, rz);
-      v128.store(at, near);
+      addEdge(sum, node + STREAMWISE, factor(node + STREAMWISE, v128.load(far), near), rx, ry, rz);
+      v128.store(far, near);
       left = near;
-      node = next;
-      rx = nextX;
-      ry = nextY;
-      rz = nextZ;
-      near = nextNear;
     }
     closeRow(scratch, sum);
   }
@@ -98,7 +99,7 @@ function sweep(node: usize, last: usize, scratch: usize, end: usize): void {
 
 /**
  * Adds the velocity of a packed lattice at n points (n even) to out. `points` holds x, y, z and `out` holds u, v, w, each
- * in three stretches of `stride` bytes; `scratch` has 144 bytes and one vector a column.
+ * in three stretches of `stride` bytes; `scratch` has 144 bytes and five vectors a column.
  */
 export function induceDouble(
   records: usize,
@@ -118,7 +119,7 @@ export function induceDouble(
     v128.store(scratch, v128.load(points + stride + p), POINTS + 16);
     v128.store(scratch, v128.load(points + stride * 2 + p), POINTS + 32);
     for (let at = scratch + FAR; at < end; at += 16) v128.store(at, f64x2.splat(1));
-    sweep(records, last, scratch, end);
+    sweep(records, last, cols, scratch);
     addTo(out + p, scratch);
     addTo(out + stride + p, scratch + 16);
     addTo(out + stride * 2 + p, scratch + 32);

@@ -2,9 +2,9 @@
 // of two singles, so that differences keep the accuracy of double; the pair arithmetic and the sum of a row are in single,
 // the total of the rows in double. Formula and order of operations are those of typescript-kernel.ts.
 //
-// Written for the processor: the distance to the next node is begun before the edges of this one, since square root and
-// division take long; sums live in memory, since locals would be spilled to a stack that is not aligned for vectors, which
-// made one process in ten two and a half times slower.
+// Written for the processor: a row's distances come first and its edges after, since square root and division take long and
+// would wait for one another; sums and places live in memory, since locals would be spilled to a stack that is not aligned
+// for vectors, which made one process in ten two and a half times slower.
 
 /** Bytes a node: in single, x, y, z high parts, then low parts, μ², two edges of six numbers each, and padding. */
 const RECORD: usize = 80;
@@ -13,10 +13,16 @@ const CORE: usize = 24;
 const SPANWISE: usize = 28;
 const STREAMWISE: usize = 52;
 
-/** Scratch: totals u, v, w (32 bytes each), points x, y, z (high 16, low 16 each), row sums, one vector a column. */
+/**
+ * Scratch: totals u, v, w (32 bytes each), points x, y, z (high 16, low 16 each), row sums; then for each
+ * column a vector for the distance to the row above, and places.
+ */
 const POINTS: usize = 96;
 const SUMS: usize = 192;
 const FAR: usize = 240;
+
+/** Bytes of a place: r and R. */
+const PLACE: usize = 64;
 
 /** p - x of one coordinate for four points, from the two parts of each. */
 function difference(point: usize, node: usize): v128 {
@@ -63,39 +69,37 @@ function closeRow(totals: usize, sum: usize): void {
   }
 }
 
-/** Totals of the nodes from `node` to `last` at four points; reads, and makes nothing of, one record past the last. */
-function sweep(node: usize, last: usize, scratch: usize, end: usize): void {
-  const p = scratch + POINTS;
+/** Takes the points from the nodes of a row: for each node, r and R are written to `places`. */
+function place(node: usize, places: usize, end: usize, p: usize): void {
+  for (; places < end; places += PLACE, node += RECORD) {
+    const rx = difference(p, node);
+    const ry = difference(p + 32, node + 4);
+    const rz = difference(p + 64, node + 8);
+    v128.store(places, rx);
+    v128.store(places, ry, 16);
+    v128.store(places, rz, 32);
+    v128.store(places, distance(rx, ry, rz, node), 48);
+  }
+}
+
+/** Totals of the nodes from `node` to `last` at four points; column 0 has a spanwise edge of zero strength. */
+function sweep(node: usize, last: usize, cols: i32, scratch: usize): void {
   const sum = scratch + SUMS;
-  let rx = difference(p, node);
-  let ry = difference(p + 32, node + 4);
-  let rz = difference(p + 64, node + 8);
-  let near = distance(rx, ry, rz, node);
+  const places = scratch + FAR + <usize>cols * 16;
+  const end = places + <usize>cols * PLACE;
   while (node < last) {
-    let at = scratch + FAR;
-    addEdge(sum, node + STREAMWISE, factor(node + STREAMWISE, v128.load(at), near), rx, ry, rz);
-    v128.store(at, near);
-    node += RECORD;
-    let left = near;
-    rx = difference(p, node);
-    ry = difference(p + 32, node + 4);
-    rz = difference(p + 64, node + 8);
-    near = distance(rx, ry, rz, node);
-    for (at += 16; at < end; at += 16) {
-      const next = node + RECORD;
-      const nextX = difference(p, next);
-      const nextY = difference(p + 32, next + 4);
-      const nextZ = difference(p + 64, next + 8);
-      const nextNear = distance(nextX, nextY, nextZ, next);
+    place(node, places, end, scratch + POINTS);
+    let left = f32x4.splat(1);
+    let far = scratch + FAR;
+    for (let at = places; at < end; at += PLACE, far += 16, node += RECORD) {
+      const rx = v128.load(at);
+      const ry = v128.load(at, 16);
+      const rz = v128.load(at, 32);
+      const near = v128.load(at, 48);
       addEdge(sum, node + SPANWISE, factor(node + SPANWISE, left, near), rx, ry, rz);
-      addEdge(sum, node + STREAMWISE, factor(node + STREAMWISE, v128.load(at), near), rx, ry, rz);
-      v128.store(at, near);
+      addEdge(sum, node + STREAMWISE, factor(node + STREAMWISE, v128.load(far), near), rx, ry, rz);
+      v128.store(far, near);
       left = near;
-      node = next;
-      rx = nextX;
-      ry = nextY;
-      rz = nextZ;
-      near = nextNear;
     }
     closeRow(scratch, sum);
   }
@@ -121,7 +125,7 @@ function addTotals(at: usize, sums: usize): void {
 
 /**
  * Adds the velocity of a packed lattice at n points (n a multiple of 4) to out. `points` holds x, y, z and `out` holds
- * u, v, w, each in three stretches of `stride` bytes; `scratch` has 240 bytes and one vector a column.
+ * u, v, w, each in three stretches of `stride` bytes; `scratch` has 240 bytes and five vectors a column.
  */
 export function induceMixed(
   records: usize,
@@ -141,7 +145,7 @@ export function induceMixed(
     split(points + stride + p, scratch + POINTS + 32);
     split(points + stride * 2 + p, scratch + POINTS + 64);
     for (let at = scratch + FAR; at < end; at += 16) v128.store(at, f32x4.splat(1));
-    sweep(records, last, scratch, end);
+    sweep(records, last, cols, scratch);
     addTotals(out + p, scratch);
     addTotals(out + stride + p, scratch + 32);
     addTotals(out + stride * 2 + p, scratch + 64);

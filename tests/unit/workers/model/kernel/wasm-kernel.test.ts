@@ -45,9 +45,15 @@ const hash = (v: Velocities) => {
 
 const cases = fc.record({
   seed: fc.integer({ min: 100_000, max: 2_000_000_000 }),
-  shapes: fc.array(fc.tuple(fc.integer({ min: 0, max: 7 }), fc.integer({ min: 1, max: 6 })), {
-    maxLength: 3,
-  }),
+  shapes: fc.array(
+    fc.tuple(
+      fc.integer({ min: 0, max: 7 }),
+      fc.oneof(fc.integer({ min: 1, max: 6 }), fc.constantFrom(15, 16, 17, 35)),
+    ),
+    {
+      maxLength: 3,
+    },
+  ),
   strewnPoints: fc.integer({ min: 0, max: 9 }),
   pitch: fc.constantFrom(1e-3, 0.1, 50),
 });
