@@ -14,6 +14,11 @@ import { SPIKE_LIMIT } from "./spike-flags.ts";
 /** Growth must reach this share of the level before it matters to an average. */
 const MATTERS_SHARE = 1e-3;
 
+/** A spike must be this many times what matters of a fluctuation. */
+const SPIKE_MATTERS = 5;
+/** Fluctuations up to this many of the smallest steps that a channel ever takes are its resolution, as in a count. */
+const RESOLUTION_STEPS = 2;
+
 /** What one channel's monitor is told. */
 export interface ChannelMonitorOptions {
   readonly channel: string;
@@ -31,6 +36,9 @@ export interface ChannelMonitorOptions {
 export class ChannelMonitor {
   readonly alarms: OnsetAlarm[] = [];
   private index = -1;
+  private last = Number.NaN;
+  /** Smallest change between neighbours so far. */
+  private quantum = Number.POSITIVE_INFINITY;
   private readonly options: ChannelMonitorOptions;
   private readonly blocks: BlockReader;
   private readonly guard: Guard;
@@ -78,6 +86,9 @@ export class ChannelMonitor {
   push(x: number): OnsetAlarm | null {
     this.index++;
     if (!Number.isFinite(x)) return this.raise("non-finite", "non-finite", this.index);
+    const change = Math.abs(x - this.last);
+    if (change > 0 && change < this.quantum) this.quantum = change;
+    this.last = x;
     const before = this.alarms.length;
     const { min, max } = this.options.bound;
     if ((min !== undefined && x < min) || (max !== undefined && x > max)) {
@@ -93,27 +104,30 @@ export class ChannelMonitor {
     const { block } = this.options.layout;
     const start = this.index + 1 - block;
     const level = this.sizes.count > 0 ? this.sizes.median() : reading.size;
-    const matters = MATTERS_SHARE * this.options.sensitivity * level;
-    this.watchScale(this.differenced, reading.differencedScale, level, matters);
-    this.watchScale(this.plain, reading.plainScale, level, matters);
-    if (this.monotone.feed(reading.middle)) this.raise("monotone", "blow-up", start - 4 * block);
+    const resolution = Number.isFinite(this.quantum) ? RESOLUTION_STEPS * this.quantum : 0;
+    const matters = this.options.sensitivity * Math.max(MATTERS_SHARE * level, resolution);
+    const floor = DUST_SHARE * level;
+    this.watchScale(this.differenced, reading.differencedScale, floor, matters);
+    this.watchScale(this.plain, reading.plainScale, floor, matters);
+    if (this.monotone.feed(reading.middle, matters)) this.raise("monotone", "blow-up", start - 4 * block);
     const shifted = this.shift.feed(reading.middle, matters);
     if (shifted) this.raise("mean-shift", "mean-shift", this.index + 1 - shifted.blocksBack * block);
-    this.watchSpikes(level);
+    this.watchSpikes(floor, matters);
     this.learn(reading);
   }
 
-  private watchScale(band: ScaleBand, scale: number, level: number, matters: number): void {
-    const logScale = Math.log(Math.hypot(scale, DUST_SHARE * level) || Number.MIN_VALUE);
+  private watchScale(band: ScaleBand, scale: number, floor: number, matters: number): void {
+    const logScale = Math.log(Math.hypot(scale, floor) || Number.MIN_VALUE);
     if (!band.feed(logScale) || !(scale > matters)) return;
     const { block } = this.options.layout;
     this.raise("scale", "growing-oscillation", this.index + 1 - band.rising * block);
   }
 
-  private watchSpikes(level: number): void {
+  private watchSpikes(floor: number, matters: number): void {
     const usual = this.differenced.usual;
-    const own = Math.log(Math.hypot(this.blocks.reading.differencedScale, DUST_SHARE * level));
-    const limit = SPIKE_LIMIT * Math.exp(Number.isNaN(usual) ? own : Math.max(usual, own));
+    const own = Math.log(Math.hypot(this.blocks.reading.differencedScale, floor));
+    const noise = Math.exp(Number.isNaN(usual) ? own : Math.max(usual, own));
+    const limit = Math.max(SPIKE_LIMIT * noise, SPIKE_MATTERS * matters);
     const flags = this.blocks.flags(limit, this.index);
     if (this.spikes.feed(flags)) {
       this.raise("spikes", "spike-cluster", this.spikes.clusterStart ?? this.index);

@@ -30,15 +30,15 @@ export class MonotoneGrowth {
     this.sensitivity = sensitivity;
   }
 
-  /** Takes the median of the next block; true if a blow-up is called at it. */
-  feed(blockLevel: number): boolean {
+  /** Takes the median of the next block, and the size below which nothing matters; true if a blow-up is called at it. */
+  feed(blockLevel: number, sizeMin: number): boolean {
     let called = false;
     let value: number | null = blockLevel;
     for (let i = 0; value !== null && i < LEVELS_MAX; i++) {
       this.levels[i] ??= new DyadicLevel();
       const level = this.levels[i]!;
       level.add(value);
-      if (level.blowsUp(this.sensitivity)) called = true;
+      if (level.blowsUp(this.sensitivity, sizeMin)) called = true;
       value = level.pairMean();
     }
     return called;
@@ -72,8 +72,8 @@ class DyadicLevel {
     return this.pair;
   }
 
-  blowsUp(sensitivity: number): boolean {
-    if (this.count < DIFFERENCES_MIN) return false;
+  blowsUp(sensitivity: number, sizeMin: number): boolean {
+    if (this.count < DIFFERENCES_MIN || !(Math.abs(this.recent[0]!) > sizeMin)) return false;
     const d = this.recent;
     for (let i = 0; i + 1 < RUN; i++) {
       if (!(d[i]! * Math.sign(d[i + 1]!) >= RATIO_MIN * Math.abs(d[i + 1]!)) || d[i + 1] === 0) return false;

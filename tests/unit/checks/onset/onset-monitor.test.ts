@@ -131,6 +131,27 @@ describe("a run of one channel", () => {
     expect(monitor.notes[0]).toContain("350 steps");
   });
 
+  it("takes a count that begins to alternate as what it is", () => {
+    const uniform = seededUniform(91_919_191);
+    const count = Float64Array.from({ length: N }, (_, t) =>
+      t < 40 ? 12 : 5 + (t > 800 && uniform() < 0.5 ? 1 : 0),
+    );
+    expect(brief(count)).toEqual([]);
+    const louder = count.map((v, t) => (t > 800 ? v + Math.floor(40 * uniform()) : v));
+    expect(brief(louder).length).toBeGreaterThan(0);
+  });
+
+  it("is quiet about dust that grows in a noise-free run, in either way, and about spikes of dust", () => {
+    const dust = (t: number) => 3e-8 * Math.exp(Math.min(0.02 * (t - 700), 8));
+    const cycle = (t: number) => 1 + 0.05 * Math.sin((2 * Math.PI * t) / 10);
+    expect(brief(Float64Array.from({ length: N }, (_, t) => cycle(t) + dust(t)))).toEqual([]);
+    expect(brief(Float64Array.from({ length: N }, (_, t) => cycle(t) + dust(t) * Math.sin(t / 3)))).toEqual(
+      [],
+    );
+    const spikes = Float64Array.from({ length: N }, (_, t) => cycle(t) + (t > 700 && t % 7 === 0 ? 2e-3 : 0));
+    expect(brief(spikes)).toEqual([]);
+  });
+
   it("takes a constant and zeros without an alarm", () => {
     expect(brief(new Float64Array(N).fill(3))).toEqual([]);
     expect(brief(new Float64Array(N))).toEqual([]);

@@ -239,7 +239,7 @@ describe("monotone growth and shifts of the mean, block by block", () => {
   it("finds an exponential and no ramp, square or sine", () => {
     const calls = (f: (j: number) => number) => {
       const growth = new MonotoneGrowth(1);
-      for (let j = 0; j < 200; j++) if (growth.feed(1 + f(j) + 0.001 * normal())) return j;
+      for (let j = 0; j < 200; j++) if (growth.feed(1 + f(j) + 0.001 * normal(), 0)) return j;
       return null;
     };
     expect(calls((j) => 1e-3 * Math.exp(0.6 * (j - 50)))).toBeGreaterThan(52);
