@@ -1,8 +1,8 @@
 // `npm run bench:kernel`: speed and error of the pair kernels, as ratios in one run, against what is demanded of them.
-// CPU times; every candidate once a round; medians of the rounds of a group; every group a process of its own, and the
-// figure the median over the groups, so that one group on a slow processor or a bad memory layout moves nothing.
+// CPU times; every candidate once a round; medians of the rounds of a group; every group a process of its own, held to one
+// processor, and the figure the median over the groups, so that one slow group moves nothing.
 // Options: --json, --groups N (odd). Exit 1 when a demand is not met.
-import { spawnSync } from "node:child_process";
+import { type SpawnSyncReturns, spawnSync } from "node:child_process";
 import { existsSync, mkdtempSync, rmSync } from "node:fs";
 import { cpus, tmpdir } from "node:os";
 import { join } from "node:path";
@@ -18,6 +18,7 @@ interface Figure {
   readonly groups: readonly number[];
 }
 
+const PINNER = "taskset";
 const MODULE = join(import.meta.dirname, "../../dist/workers/model/kernel/lattice.wasm");
 
 const { values } = parseArgs({
@@ -46,9 +47,7 @@ function report(folder: string): void {
   const groups: GroupResult[] = [];
   for (let i = 0; i < Number(values.groups); i++) {
     const args = ["--group", ...(native === null ? [] : ["--native", native.program])];
-    const child = spawnSync(process.execPath, [...process.execArgv, import.meta.filename, ...args], {
-      encoding: "utf8",
-    });
+    const child = onProcessor(i % cpus().length, [...process.execArgv, import.meta.filename, ...args]);
     if (child.status !== 0) throw new Error(`a group failed: ${child.stderr}`);
     groups.push(JSON.parse(child.stdout) as GroupResult);
   }
@@ -58,6 +57,14 @@ function report(folder: string): void {
   if (values.json) console.log(JSON.stringify({ machine, figures, groups }, null, 2));
   else print(machine, groups, figures);
   process.exitCode = failed.length === 0 ? 0 : 1;
+}
+
+/** Runs Node on one processor, its children too, so that all candidates meet the same neighbours; anywhere without taskset. */
+function onProcessor(processor: number, args: readonly string[]): SpawnSyncReturns<string> {
+  const pinned = spawnSync(PINNER, ["-c", String(processor), process.execPath, ...args], {
+    encoding: "utf8",
+  });
+  return pinned.error === undefined ? pinned : spawnSync(process.execPath, args, { encoding: "utf8" });
 }
 
 function judge(groups: readonly GroupResult[]): Figure[] {

@@ -3,15 +3,16 @@ import { join } from "node:path";
 import type { Lattice, Points, Velocities } from "../../workers/model/kernel/index.ts";
 import { packRecords, RECORD } from "../../workers/model/kernel/node-records.ts";
 
+const COMPILER = "gcc";
 const FLAGS = ["-O3", "-march=native", "-fno-math-errno", "-fno-trapping-math"];
 
 /** Builds lattice-reference.c into `folder`; returns the program's path, or null with no compiler on the machine. */
 export function buildNativePeer(folder: string): { program: string; compiler: string } | null {
-  const version = spawnSync("gcc", ["--version"], { encoding: "utf8" });
+  const version = spawnSync(COMPILER, ["--version"], { encoding: "utf8" });
   if (version.error !== undefined || version.status !== 0) return null;
   const program = join(folder, "lattice-reference");
   const source = join(import.meta.dirname, "lattice-reference.c");
-  const built = spawnSync("gcc", [...FLAGS, source, "-lm", "-o", program], { encoding: "utf8" });
+  const built = spawnSync(COMPILER, [...FLAGS, source, "-lm", "-o", program], { encoding: "utf8" });
   if (built.status !== 0) throw new Error(`lattice-reference.c does not compile: ${built.stderr}`);
   return { program, compiler: `${version.stdout.split("\n")[0]} ${FLAGS.join(" ")}` };
 }
