@@ -1,7 +1,7 @@
 import { caseSchema } from "../orchestrator/contract/case-schema.ts";
 import { AppError } from "../orchestrator/contract/index.ts";
 import { loadKernel } from "./load-kernel.ts";
-import { createSimulation, restoreSimulation } from "./model/index.ts";
+import { createSimulation, loadDoubts, restoreSimulation } from "./model/index.ts";
 import type { PairKernel } from "./model/kernel/index.ts";
 import type { CaseInputs, Solver } from "./solver.ts";
 
@@ -36,6 +36,7 @@ export function builtInSolver(): { readonly solver: Solver; readonly notice: str
   return {
     notice: newest.notice,
     solver: {
+      doubts: loadDoubts,
       create: (inputs) => withName(newest.kernel, createSimulation(checkedCase(inputs), newest.kernel)),
       restore: (inputs, checkpoint) => {
         const kernel = kernelNamed(nameOf(checkpoint));

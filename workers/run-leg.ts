@@ -10,6 +10,7 @@ import {
   type LegReport,
   type Simulation,
 } from "../orchestrator/contract/index.ts";
+import { addDoubts } from "./add-doubts.ts";
 import { readCheckpointFile, writeCheckpointFile } from "./checkpoint-file.ts";
 import { createRunJudge } from "./create-run-judge.ts";
 import { GrowingRecord } from "./growing-record.ts";
@@ -63,10 +64,11 @@ interface Stop {
  */
 export async function runLeg(order: LegOrder, around: LegSurroundings): Promise<LegReport> {
   try {
-    const leg = takeUp(order, around.solvers);
+    const solver = solverNamed(order.solver, around.solvers);
+    const leg = takeUp(order, solver);
     let last: HistoryJudgement | null = null;
     const keep = (finding: Finding | null): void => {
-      last = finding?.judgement ?? last;
+      last = finding === null ? last : addDoubts(finding.judgement, solver.doubts);
     };
     const stop = replay(leg, keep) ?? (await timed(leg, around, () => stepOn(leg, around, keep)));
     keep(stop.finding);
@@ -78,8 +80,8 @@ export async function runLeg(order: LegOrder, around: LegSurroundings): Promise<
   }
 }
 
-function takeUp(order: LegOrder, solvers: SolverTable): Leg {
-  const simulation = openSimulation(order, solverNamed(order.solver, solvers));
+function takeUp(order: LegOrder, solver: Solver): Leg {
+  const simulation = openSimulation(order, solver);
   const names = simulation.channels.map((channel) => channel.name);
   const record = new GrowingRecord(names.length);
   for (const piece of readHistoryPieces(order.folder, order.history, names)) record.append(piece);

@@ -3,7 +3,7 @@ import type { CampaignState, CampaignSummary, RunDetail } from "../../orchestrat
 import type { LiveNight } from "./live-night.ts";
 
 /** Which part of a run's history, and how it is written. */
-export interface HistoryRequest {
+interface HistoryRequest {
   /** The last attempt where none is named. */
   readonly attempt: number | null;
   /** All channels where none is named. */

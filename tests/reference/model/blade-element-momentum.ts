@@ -1,5 +1,5 @@
 /** Section of a blade for the reference: radius and width, chord, m; pitch, rad. */
-export interface ReferenceSection {
+interface ReferenceSection {
   readonly r: number;
   readonly dr: number;
   readonly chord: number;

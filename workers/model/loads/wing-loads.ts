@@ -58,7 +58,7 @@ export function wingLoads(wing: Wing, at: WingFlow, out: WingLoads): void {
  * ∂Γ/∂t of ring i, m²/s²: second-order backward difference, first-order until there are two values before; zero at the
  * first step, where the impulsive start has no rate.
  */
-export function circulationRate(wing: Wing, i: number, { step, dtSeconds }: WingFlow): number {
+function circulationRate(wing: Wing, i: number, { step, dtSeconds }: WingFlow): number {
   const now = wing.circulation[i]!;
   const before = wing.circulationBefore[i]!;
   if (step < 2) return 0;

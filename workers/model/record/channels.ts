@@ -17,7 +17,7 @@ export const hasLiftAndDrag = (inputs: Case): boolean => inputs.path.kind === "s
 export const hasTether = (inputs: Case): boolean => inputs.path.kind === "circle";
 
 /** Number of a strip as channels write it, left tip first, from 1, all with the same count of digits. */
-export const stripNumber = (j: number, strips: number): string =>
+const stripNumber = (j: number, strips: number): string =>
   String(j + 1).padStart(Math.max(2, String(strips).length), "0");
 
 /** Every channel of a case, in the order of its samples. */

@@ -16,7 +16,7 @@ const LINE_TO_TRAILING_EDGE = 0.75;
 const SELF_CORE_RADII = 1e-3;
 
 /** One blade: bound rings from the lifting line (row 0) to the trailing edge (row 1), and the wake. */
-export interface Blade {
+interface Blade {
   readonly bound: Lattice;
   readonly wake: Wake;
   /** Index of its first section among all sections of the case. */

@@ -63,7 +63,7 @@ export function clustersOf({ wing, rotors }: Case): { atM: number; radiusM: numb
 }
 
 /** Rows of which the wing's wake has room: those kept, and those shed until the next cut. */
-export const wingWakeCapacity = (inputs: Case, times: Timing): number =>
+const wingWakeCapacity = (inputs: Case, times: Timing): number =>
   times.wingRows + times.wingCutEvery / inputs.numerics.wing_row_every + 1;
 
 /**
