@@ -73,7 +73,7 @@ async function finishRun(
     judgedSteps: STEPS,
     steps: STEPS,
     longestSteps: plan.runs[index]!.longestSteps,
-    judgement: judgement(end.verdict),
+    judgement: judgement(end),
     next: { kind: "done", ...end },
   });
   if (done !== "committed") throw new Error("the run could not be committed");
@@ -94,7 +94,7 @@ function writeHistory(path: string, runId: string): number {
   return parts.reduce((sum, part) => sum + part.length, 0);
 }
 
-function judgement(verdict: Verdict): HistoryJudgement {
+function judgement({ verdict, reason }: { verdict: Verdict; reason: string }): HistoryJudgement {
   const load: ChannelJudgement = {
     verdict,
     mean: 0.4501,
@@ -109,7 +109,7 @@ function judgement(verdict: Verdict): HistoryJudgement {
     samplesNeeded: null,
     hiddenDrift: 0.001,
     tests: [],
-    words: "invented",
+    words: reason,
   };
   return { samples: STEPS, dt: DT, onset: null, notes: [], channels: { load } };
 }
