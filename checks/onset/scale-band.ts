@@ -1,3 +1,4 @@
+import { CumulativeSum } from "./cumulative-sum.ts";
 import { ExpandingReference } from "./expanding-reference.ts";
 import type { ArmingCounts } from "./monitor-layout.ts";
 import { QuietReference } from "./quiet-reference.ts";
@@ -8,8 +9,12 @@ const SPREAD_MIN = 0.1;
 const ALLOWANCE_MAX = 1;
 const LONG_REFERENCE_BLOCKS = 40;
 
-/** A spread from n blocks is itself uncertain, and reads low in a lull: it is raised by 5/n of itself. */
-const SHORT_REFERENCE = 5;
+/** A spread from n blocks is itself uncertain, and reads low in a lull: it is raised by 6/n of itself. */
+const SHORT_REFERENCE = 6;
+
+/** The patient sum's share of the allowance, and its threshold over the prompt one's. */
+const PATIENT_ALLOWANCE = 0.8;
+const PATIENT_THRESHOLD = 1.5;
 
 /** Settings of one band. */
 export interface ScaleBandSettings {
@@ -26,23 +31,22 @@ export interface ScaleBandSettings {
  * Watches the log scale of a quantity, block by block, for a lasting rise over its own past.
  *
  *   C = max(0, C + clip(y − m − k, −1, 1)),  alarm at C > threshold
- *   m = median, s = max(0.10, 1.4826·MAD·(1 + 5/n)) of a reference of n blocks that lags a few behind
+ *   C' likewise with 0.8·k, alarm at C' > 1.5·threshold, once the reference has 40 blocks
+ *   m = median, s = max(0.10, 1.4826·MAD·(1 + 6/n)) of a reference of n blocks that lags a few behind
  *   k = max(k_min, 2s), at most 1 once the reference has 40 blocks
  *
  * The lag keeps a growth out of its own reference; the clip makes an alarm take several blocks whatever one of them
- * shows. A run that has become quiet after a long start-up is held against its last blocks instead of all, see
+ * shows. The second sum trades patience for reach: it finds a lasting rise that is hardly above the allowance. A run that has become quiet after a long start-up is held against its last blocks instead of all, see
  * {@link QuietReference}.
  *
  * Limits: growth slower than the reference can be told from (less than about 0.01 e-folds a block) goes unseen, and so
  * does a rise by less than the allowance.
  *
- * @see Page (1954), Continuous inspection schemes (the cumulative sum)
+ * @see Page (1954), Continuous inspection schemes, Biometrika 41
  */
 export class ScaleBand {
-  /** Cumulative sum; 0 while nothing is suspected. */
-  sum = 0;
-  /** Blocks since the sum was last 0. */
-  rising = 0;
+  private readonly prompt = new CumulativeSum();
+  private readonly patient = new CumulativeSum();
   private readonly settings: ScaleBandSettings;
   private readonly reference = new ExpandingReference();
   private readonly quiet = new QuietReference();
@@ -62,12 +66,18 @@ export class ScaleBand {
     return this.reference.median();
   }
 
+  /** Blocks since the suspicion arose; 0 while there is none. */
+  get rising(): number {
+    return Math.max(this.prompt.length, this.patient.length);
+  }
+
   /** Takes the log scale of the next block; true if the band speaks up at it. */
   feed(logScale: number): boolean {
     if (this.armed) {
-      const excess = logScale - this.limit();
-      this.sum = Math.max(0, this.sum + Math.max(-1, Math.min(1, excess)));
-      this.rising = this.sum > 0 ? this.rising + 1 : 0;
+      const middle = this.reference.median();
+      const allowance = this.allowance(middle);
+      this.prompt.add(logScale - middle - allowance);
+      if (this.longReference) this.patient.add(logScale - middle - PATIENT_ALLOWANCE * allowance);
     }
     this.waiting.push(logScale);
     if (this.waiting.length > this.settings.arming.late) {
@@ -75,17 +85,21 @@ export class ScaleBand {
       this.reference.add(settled);
       this.quiet.add(settled);
     }
-    return this.sum > this.settings.threshold;
+    const { threshold } = this.settings;
+    return this.prompt.value > threshold || this.patient.value > PATIENT_THRESHOLD * threshold;
   }
 
-  private limit(): number {
+  private get longReference(): boolean {
+    return this.reference.count >= LONG_REFERENCE_BLOCKS;
+  }
+
+  /** Rise over the reference's median that is allowed; negative for a run that has become quieter than its past. */
+  private allowance(middle: number): number {
     const { allowanceMin, sensitivity } = this.settings;
-    const middle = this.reference.median();
-    const { count } = this.reference;
-    const spread = Math.max(SPREAD_MIN, this.reference.spread() * (1 + SHORT_REFERENCE / count));
-    const longEnough = count >= LONG_REFERENCE_BLOCKS;
-    const wide = longEnough ? Math.min(ALLOWANCE_MAX, 2 * spread) : 2 * spread;
-    const allowance = Math.max(allowanceMin, wide * sensitivity);
-    return middle + Math.min(allowance, this.quiet.allowanceOver(middle, sensitivity));
+    const uncertain = 1 + SHORT_REFERENCE / this.reference.count;
+    const wide = 2 * Math.max(SPREAD_MIN, this.reference.spread() * uncertain);
+    const capped = this.longReference ? Math.min(ALLOWANCE_MAX, wide) : wide;
+    const allowance = Math.max(allowanceMin, capped * sensitivity);
+    return Math.min(allowance, this.quiet.allowanceOver(middle, sensitivity));
   }
 }
