@@ -13,9 +13,10 @@ export interface CaseOutlook {
   readonly stepsPerRevolution: number;
   readonly channels: readonly ChannelInfo[];
   readonly periods: readonly DeclaredPeriod[];
-  /** Nodes of all wakes once nothing more is added to them, right before a cut. */
+  /** Nodes of all wakes at a step, steps counted from 1, and the most that there ever are. */
+  readonly nodesAt: (step: number) => number;
   readonly nodesAtFullWake: number;
-  /** Segment–point pairs of one step, steps counted from 1, and of a run of so many steps. */
+  /** Segment–point pairs of one step and of a run of so many steps. */
   readonly pairsPerStepAt: (step: number) => number;
   readonly pairsOver: (steps: number) => number;
   /** Steps of one loop; null where the path does not close. */
