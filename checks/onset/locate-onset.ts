@@ -6,7 +6,7 @@ import { createOnsetMonitor, type OnsetMonitor } from "./onset-monitor.ts";
 /** Blocks that are still read after the first alarm, to see which channels agree. */
 const BLOCKS_AFTER = 10;
 /** Width of a mean shift's band from which it is no step. */
-const VAGUE_BLOCKS = 3;
+const VAGUE_BLOCKS = 1.5;
 
 /** What a whole history is judged with. */
 interface OnsetOptions {
