@@ -3,6 +3,8 @@ import { type JudgeOptions, judgeRecord } from "./mean/index.ts";
 
 /** Warning of an average that ends before an onset, since the run went wrong later. */
 const BEFORE_ONSET = "before-onset";
+/** Warning of an average whose channel scatters differently later: what a bounded breakdown is, seen from the average. */
+const VARIANCE_CHANGED = "variance-changed";
 /** Warning of an average in whose record the mean jumped. */
 const MEAN_SHIFT = "mean-shift";
 
@@ -28,7 +30,8 @@ export function judgeBesideOnset(
   if (onset.kind === "mean-shift") return withWarning(judgeRecord(x, options), MEAN_SHIFT);
   if (onset.kind === "no-stable-baseline") return unstable(judgeRecord(x.subarray(0, 0), options), onset);
   const trusted = x.subarray(0, onset.trustedEndIndex ?? x.length);
-  const judged = judgeRecord(trusted, options);
+  const plain = judgeRecord(trusted, options);
+  const judged = onset.kind === "wake-breakdown" ? withWarning(plain, VARIANCE_CHANGED) : plain;
   if (judged.verdict !== "accepted") return unstable(judged, onset);
   return {
     ...withWarning(judged, BEFORE_ONSET),
@@ -52,5 +55,6 @@ function placeInWords(onset: Onset): string {
 }
 
 function withWarning(judged: ChannelJudgement, warning: string): ChannelJudgement {
+  if (judged.warnings.includes(warning)) return judged;
   return { ...judged, warnings: [...judged.warnings, warning] };
 }

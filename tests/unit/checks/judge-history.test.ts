@@ -35,6 +35,16 @@ it("keeps what precedes a blow-up, with a warning, and leaves the rest out", () 
   expect(Math.abs(judged.channels.x!.mean! - 10)).toBeLessThan(0.5);
 });
 
+it("says that the scatter changed where a bounded breakdown cuts the record", () => {
+  const x = noise(5000, 46_000_017).map((v, i) => 10 + (v - 10) * (i > 3000 ? 6 : 1));
+  const judged = judgeHistory({ times: even(5000), channels: { x } }, { tolerance });
+  expect(judged.onset!.kind).toBe("wake-breakdown");
+  expect(judged.channels.x).toMatchObject({
+    verdict: "accepted",
+    warnings: ["variance-changed", "before-onset"],
+  });
+});
+
 it("calls the channel unstable where too little precedes", () => {
   const x = noise(5000, 44_000_011).map((v, i) => v + (i > 4000 ? Math.exp((i - 4000) / 40) - 1 : 0));
   const judged = judgeHistory({ times: even(5000), channels: { x } }, { tolerance: { absolute: 0.001 } });
