@@ -13,16 +13,16 @@ const plan = testPlan({
   tolerance: 0.02,
   remedies: [{ name: "calmer", set: { growth: 0, noise: 0.03 }, cost: "less noise than asked for" }],
   runs: [
-    { label: "steady", inputs: steady(1, { stepMs: 0.2 }), longestSteps: 2000 },
+    { label: "steady", inputs: steady(1, { stepMs: 1 }), longestSteps: 2000 },
     {
       label: "growing",
-      inputs: steady(2, { stepMs: 0.2, phi: 0.9, growFrom: 500, growth: 0.05 }),
+      inputs: steady(2, { stepMs: 1, phi: 0.9, growFrom: 500, growth: 0.05 }),
       longestSteps: 1500,
     },
-    { label: "short", inputs: steady(3, { stepMs: 0.2, phi: 0.98 }), longestSteps: 400 },
+    { label: "short", inputs: steady(3, { stepMs: 1, phi: 0.98 }), longestSteps: 400 },
     {
       label: "spinning up",
-      inputs: steady(4, { stepMs: 0.2, startUp: 2, startUpSteps: 40 }),
+      inputs: steady(4, { stepMs: 1, startUp: 2, startUpSteps: 40 }),
       longestSteps: 2000,
     },
   ],
