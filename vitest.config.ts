@@ -3,6 +3,7 @@ import { defineConfig } from "vitest/config";
 export default defineConfig({
   test: {
     include: ["tests/**/*.test.ts"],
+    setupFiles: ["tests/helpers/fixed-seed.ts"],
     testTimeout: 120_000,
     hookTimeout: 120_000,
     maxWorkers: 2,

@@ -46,7 +46,9 @@ describe("worked by hand", () => {
 describe("properties", () => {
   it("scaling by a power of two scales variance and long-run variance exactly by its square", () => {
     fc.assert(
-      fc.property(series, (x) => {
+      fc.property(series, (given) => {
+        // Squares of the tiniest numbers underflow, and nothing is exact there.
+        const x = given.map((v) => (Math.abs(v) < 1e-100 ? 0 : v));
         const scaled = x.map((v) => 4 * v);
         expect(variance(scaled)).toBe(16 * variance(x));
         expect(longRunVarianceBartlett(scaled, 3)).toBe(16 * longRunVarianceBartlett(x, 3));
