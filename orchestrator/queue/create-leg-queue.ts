@@ -38,14 +38,20 @@ export async function createLegQueue(pool: SqlPool): Promise<LegQueue> {
   let onQueueError: (error: Error) => void = () => undefined;
   queue.on("error", (error) => onQueueError(error));
   await queue.waitUntilReady();
+  let clearing: Promise<unknown> = Promise.resolve();
   return {
     add: async (tickets) => {
       for (let i = 0; i < tickets.length; i += BATCH)
         await queue.addBulk(tickets.slice(i, i + BATCH).map(({ ticket, priority }) => job(ticket, priority)));
     },
-    clear: async () => {
-      await queue.obliterate({ force: true });
-      await queue.resume();
+    // Clearing pauses the queue while it lasts: one at a time, or the first would wake it under the second.
+    clear: () => {
+      const next = clearing.then(async () => {
+        await queue.obliterate({ force: true });
+        await queue.resume();
+      });
+      clearing = next.catch(() => undefined);
+      return next;
     },
     consume: ({ size, handle, onError }): LegConsumer => {
       onQueueError = onError;
